@@ -1,0 +1,416 @@
+"""An invented incident, worded by hand: the shape `templates/incident_report.html` asks for."""
+
+from typing import Any
+
+from triage.documents.charts import (
+    CauseRange,
+    CurrentEstimate,
+    HumidityCurve,
+    HumidityMark,
+    Scale,
+    ScaleRow,
+    cause_ranges,
+    charge_energy,
+    time_current,
+    voltage_against_humidity,
+    weights,
+)
+
+DIGEST = "record 3f9a 12bc 77d0 · knowledge 81e4 · program 0.1.0"
+
+
+def context(**changes: Any) -> dict[str, Any]:
+    """The whole report: page one, facts, analysis, closing part."""
+    return {
+        "language": "en",
+        "paper": "A4",
+        "title": "Incident report 26-7KQ4, issue 2, preliminary",
+        "draft": False,
+        "running": {
+            "issue": "Incident 26-7KQ4 · issue 2 · preliminary · supersedes 90ab 4e11",
+            "digest": DIGEST,
+            "page": "Page",
+            "of": "of",
+        },
+        "heading": {
+            "name": "Incident report",
+            "lines": [
+                "Operating room 6, floor 2 · event 2026-01-14, 07:05 · reported 07:20",
+                "Prepared by clinical engineering, 2026-01-14, 09:40",
+            ],
+        },
+        "page_one": page_one(),
+        "parts": [facts(), analysis(), closing()],
+    } | changes
+
+
+def page_one() -> dict[str, Any]:
+    """Page one of a typical case."""
+    return {
+        "marking": "Internal, clinical engineering",
+        "person": [
+            "Medical review asked for today: tingling outlasted the contact.",
+            "Occupational health, circulating nurse, sent 07:30. No glove or skin breach reported. "
+            "Palpitations, weakness or a burn mark: emergency department at once.",
+        ],
+        "equipment": {
+            "headline": "Hold the trolley and its cord until the named checks are done.",
+            "rows": [
+                {
+                    "item": "Trolley A, cord C2",
+                    "defect": "Earth continuity 4.1 Ω as found, limit 0.3 Ω",
+                    "severity": 3,
+                    "disposition": "Withdraw and quarantine with cord, settings untouched. "
+                    "First: transfer agreed with the clinician in charge.",
+                },
+                {
+                    "item": "Preparation table",
+                    "defect": "None found by tests 2 and 3",
+                    "severity": 2,
+                    "disposition": "Hold until resistance between metals is measured",
+                },
+                {
+                    "item": "Outlet group W3",
+                    "defect": "Not tested",
+                    "severity": 2,
+                    "disposition": "Hold until retention and earth impedance are measured",
+                },
+            ],
+            "room": "Operating room 6 may be used with outlets W1 and W2. Decided by: head of "
+            "clinical engineering with theatre lead.",
+        },
+        "happened": {
+            "summary": "Left hand on the trolley shelf, right hand on the preparation table, dry, "
+            "no gloves, isolated supply, no alarm. 24 %RH, read in the room at 07:15.",
+            "quotes": [
+                {
+                    "heading": "Circulating nurse, 07:20, before talking with others, reported:",
+                    "text": "A zap, then a buzzing in both arms until I let go.",
+                    "language": "en",
+                }
+            ],
+        },
+        "causes": {
+            "summary": "An electrical fault is more likely than static; which one is not settled.",
+            "rows": [
+                ["Lost protective earth, trolley or cord", "likely", "35 to 80 %"],
+                ["Potential between two earthed metals", "possible", "5 to 30 %"],
+                ["Static, charged trolley", "possible", "4 to 25 %"],
+                ["Static, walking", "unlikely", "1 to 9 %"],
+            ],
+            "note": "Judged likelihoods, no measured frequencies behind them. Ranges: 9 in 10. "
+            "Does not fit: no isolation alarm.",
+        },
+        "estimates": [
+            ["Touch current, earth lost", "0.21 mA", "0.07 to 0.35 mA", "trolley class, 120 V"],
+            ["Highest current the monitor allows", "1.4 mA", "ceiling", "reading at 07:25"],
+            ["Body voltage after rolling", "3.1 kV", "0.8 to 9 kV", "24 %RH, vinyl, clogs"],
+            ["Energy of such a discharge", "0.7 mJ", "0.04 to 6 mJ", "capacitance assumed"],
+        ],
+        "not_known": [
+            "Whether cord C2 was the cord of the event: swapped by a helper before arrival.",
+            "State of outlet W3; what else was on the isolated supply at 07:05.",
+            "Resistance between preparation table and room earth.",
+        ],
+        "next_checks": [
+            {
+                "who": "Biomedical, patient absent",
+                "checks": [
+                    "Earth continuity of trolley with cord C1, flexed at both ends, 10 min",
+                    "Insulation resistance and touch current on an earthed supply, 15 min",
+                    "Voltage between every pair of metals within reach, under load, 15 min",
+                ],
+            },
+            {
+                "who": "Licensed electrician, request",
+                "checks": [
+                    "Outlet W3: polarity, earth impedance, retention; neighbours too, 20 min"
+                ],
+            },
+        ],
+        "cautions": [
+            "Supports, does not replace, the judgement of the responsible engineer.",
+            "Only the listed tests were done; an untested item is not cleared. Nobody touches it "
+            "again to check.",
+            "Local codes, the maker's instructions and licensed practice take precedence.",
+        ],
+    }
+
+
+READING_COLUMNS = [
+    {"name": "Reading", "width": 25},
+    {"name": "State", "width": 12},
+    {"name": "Value", "width": 11, "figure": True},
+    {"name": "Limit", "width": 11, "figure": True},
+    {"name": "Verdict", "width": 15},
+    {"name": "Limit from, how known", "width": 26},
+]
+
+
+def facts() -> dict[str, Any]:
+    """Statements, scene, readings."""
+    readings = [
+        [
+            "Earth continuity, trolley A with cord C2",
+            "as found",
+            "4.1 Ω",
+            "0.3 Ω",
+            "valid fail",
+            "IEC 62353, memory",
+        ],
+        [
+            "Touch current, normal condition",
+            "as found",
+            "38 µA",
+            "100 µA",
+            "valid pass",
+            "IEC 60601-1, memory",
+        ],
+        [
+            "Touch current, open earth",
+            "as found",
+            "212 µA",
+            "500 µA",
+            "valid pass",
+            "IEC 60601-1, memory",
+        ],
+        [
+            "Insulation resistance, mains to case",
+            "disturbed",
+            "≥ 200 MΩ",
+            "2 MΩ",
+            "invalid: cord swapped",
+            "IEC 62353, memory",
+        ],
+        [
+            "Total hazard current, isolated supply",
+            "as found",
+            "1.4 mA",
+            "5 mA",
+            "valid pass",
+            "NFPA 99, memory",
+        ],
+        [
+            "Earth continuity, trolley A with cord C3",
+            "as left",
+            "0.08 Ω",
+            "0.3 Ω",
+            "valid pass",
+            "IEC 62353, memory",
+        ],
+        [
+            "Resistance to ground, casters",
+            "as found",
+            "2 × 10¹² Ω",
+            "1 × 10⁹ Ω",
+            "valid fail",
+            "site choice",
+        ],
+        ["Outlet W3, retention force", "not done", "unknown", "1.1 N", "not done", "site choice"],
+    ]
+    return {
+        "title": "Facts",
+        "marking": "Facts: reported, measured, done",
+        "sections": [
+            {
+                "title": "Statements",
+                "wide": False,
+                "blocks": [
+                    {
+                        "kind": "quote",
+                        "heading": "Circulating nurse, 07:20, before talking with others. "
+                        "Reported. Mapped to: zap, then buzz (by the technician).",
+                        "text": "A zap, then a buzzing in both arms until I let go.",
+                        "language": "en",
+                    },
+                    {
+                        "kind": "quote",
+                        "heading": "Cleaner, 08:05, after talking with others. Reported.",
+                        "text": "Es hat kurz gekribbelt, als ich den Wagen schob.",
+                        "language": "de",
+                    },
+                ],
+            },
+            {
+                "title": "Scene and custody",
+                "wide": False,
+                "blocks": [
+                    {
+                        "kind": "list",
+                        "lines": [
+                            "Before arrival: trolley unplugged and moved to the corridor; cord "
+                            "swapped by a helper.",
+                            "07:35 trolley, cords C1 and C2 tagged, locked in bay 3, technician.",
+                            "Four photographs, digests on the last page.",
+                        ],
+                    }
+                ],
+            },
+            {
+                "title": "Readings against limits",
+                "wide": True,
+                "blocks": [{"kind": "table", "columns": READING_COLUMNS, "rows": readings}],
+            },
+        ],
+    }
+
+
+def analysis() -> dict[str, Any]:
+    """Charts and weights."""
+    return {
+        "title": "Analysis",
+        "marking": "Analysis: opinion, not finding",
+        "sections": [
+            _chart("Ranked causes", causes_chart(), "Ranges hold 9 in 10 of the judged cases."),
+            _chart(
+                "Voltage against humidity",
+                humidity_chart(),
+                "Vinyl floor, clogs. The tinted band holds 9 in 10 of persons and steps.",
+            ),
+            _chart("Weights", weights_chart(), "Ten decibans multiply the odds by ten."),
+            _chart(
+                "Charge and energy",
+                charge_chart(),
+                "Marks are published thresholds with their spread.",
+            ),
+            _chart(
+                "Current and duration",
+                current_chart(),
+                "Boundaries: IEC 60479-1, hand to hand, memory; verify against the edition used.",
+            ),
+        ],
+    }
+
+
+def closing() -> dict[str, Any]:
+    """Cautions, signatures, sources."""
+    return {
+        "title": "Cautions, signatures, sources",
+        "marking": "",
+        "sections": [
+            {
+                "title": "Cautions",
+                "wide": False,
+                "blocks": [{"kind": "list", "lines": page_one()["cautions"]}],
+            },
+            {
+                "title": "Signatures",
+                "wide": False,
+                "blocks": [
+                    {
+                        "kind": "signatures",
+                        "columns": [
+                            {"name": "Role", "width": 34},
+                            {"name": "Date and time", "width": 22},
+                            {"name": "Signature", "width": 44},
+                        ],
+                        "rows": [[role, "", ""] for role in ("Author", "Reviewer", "Approver")],
+                    }
+                ],
+            },
+            {
+                "title": "Sources",
+                "wide": True,
+                "blocks": [
+                    {
+                        "kind": "sources",
+                        "lines": [
+                            f"[{n}] Standard or paper number {n}, table {n}, value with "
+                            "unit and validity (memory: verify against the edition in force)"
+                            for n in range(1, 31)
+                        ],
+                    }
+                ],
+            },
+        ],
+    }
+
+
+def _chart(title: str, svg: str, caption: str) -> dict[str, Any]:
+    blocks = [{"kind": "chart", "svg": svg, "caption": caption}]
+    return {"title": title, "wide": True, "blocks": blocks}
+
+
+def causes_chart() -> str:
+    """Eight causes."""
+    rows = [
+        CauseRange("Lost protective earth, trolley or cord", 0.35, 0.61, 0.80, True),
+        CauseRange("Potential between two earthed metals", 0.05, 0.14, 0.30, True),
+        CauseRange("Static, charged trolley", 0.04, 0.11, 0.25, False),
+        CauseRange("Static, walking", 0.01, 0.03, 0.09, False),
+        CauseRange("Second fault on the isolated supply", 0.008, 0.025, 0.07, True),
+        CauseRange("Liquid path", 0.004, 0.012, 0.04, True),
+        CauseRange("Static, rising from a chair", 0.001, 0.006, 0.02, False),
+        CauseRange("Nerve or muscle, not electrical", 0.001, 0.006, 0.02, False),
+    ]
+    return cause_ranges(rows, alt="Ranked causes. Lost protective earth: 35 to 80 percent.")
+
+
+def humidity_chart() -> str:
+    """Body voltage falls with humidity."""
+    humidity = list(range(10, 81, 5))
+    median = [12_000 * 0.956 ** (each - 10) for each in humidity]
+    return voltage_against_humidity(
+        HumidityCurve(humidity, median, [v / 3.5 for v in median], [v * 3 for v in median]),
+        incident=HumidityMark("this incident, 24 %RH", 24, 3100, 800, 9000),
+        felt=(1200, 3500),
+        alt="Body voltage against humidity. At 24 percent: 3.1 kV, range 0.8 to 9 kV.",
+    )
+
+
+def weights_chart() -> str:
+    """Seven weights."""
+    rows = [
+        ("Before any finding", 2.0),
+        ("Physics of this place", -6.0),
+        ("Buzz while holding", 14.0),
+        ("Let go and it stopped", 7.0),
+        ("No alarm", -4.0),
+        ("Dry air", -5.0),
+        ("Earth continuity failed as found", 11.0),
+    ]
+    sides = ("static, charged trolley", "lost protective earth")
+    return weights(rows, sides=sides, alt="Weights of evidence. Buzz while holding: plus 14.")
+
+
+def charge_chart() -> str:
+    """Charge and energy with marks."""
+    return charge_energy(
+        [
+            Scale(
+                "Charge",
+                "C",
+                [
+                    ScaleRow("This incident, charged trolley", 0.3e-6, 0.9e-6, 2.5e-6, True),
+                    ScaleRow("Begins to be felt", 0.1e-6, 0.2e-6, 0.4e-6, False),
+                ],
+            ),
+            Scale(
+                "Energy",
+                "J",
+                [
+                    ScaleRow("This incident, charged trolley", 0.04e-3, 0.7e-3, 6e-3, True),
+                    ScaleRow("Ignites alcohol vapour in air", 0.14e-3, 0.2e-3, 0.65e-3, False),
+                    ScaleRow("Device immunity test, 8 kV contact", 4.8e-3, 4.8e-3, 4.8e-3, False),
+                ],
+            ),
+        ],
+        alt="Charge and energy. Charge 0.3 to 2.5 microcoulomb, above the felt threshold.",
+    )
+
+
+def current_chart() -> str:
+    """Two estimates below the boundaries."""
+    return time_current(
+        [
+            CurrentEstimate("earth lost", (0.07e-3, 0.21e-3, 0.35e-3), (0.5, 3)),
+            CurrentEstimate("second fault", (0.4e-3, 0.9e-3, 1.4e-3), (0.5, 3)),
+        ],
+        ceiling=1.4e-3,
+        zones=[
+            ("felt", [(0.5e-3, 0.01), (0.5e-3, 10)]),
+            ("cannot let go", [(0.2, 0.01), (0.05, 0.1), (0.01, 0.7), (0.005, 2), (0.005, 10)]),
+            ("heart", [(0.5, 0.01), (0.4, 0.1), (0.05, 1), (0.04, 3), (0.04, 10)]),
+        ],
+        alt="Current and duration. Both estimates lie left of the let-go boundary.",
+    )

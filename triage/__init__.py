@@ -1,0 +1,3 @@
+"""Shock incident triage: static discharge or electrical fault, and what happens next."""
+
+__version__ = "0.1.0"

@@ -1,0 +1,134 @@
+"""The circumstances of one incident in SI: air, floor, shoes, wheels, supply, each with its doubt.
+
+The record comes first, the room of the site file second. What neither knows stays None.
+"""
+
+from dataclasses import dataclass
+
+from triage.clock import hours_between
+from triage.errors import OutOfRange
+from triage.evidence import OBJECTS
+from triage.incident import Incident, Item
+from triage.physics.humidity import Humidity, transfer_doubt, transferred
+from triage.quantity import parse
+from triage.site import Site
+from triage.tables import table
+
+NEAR_SD, FAR_SD = 0.03, 0.08
+"""Doubt of a humidity read in the room within the hour, and of any other (fraction, judgement)."""
+_SENSOR_SDS = (0.02, 0.5, 1.0)  # humidity as a fraction, temperature at sensor, at place [K]
+_OBJECT_CAPACITANCE = {"cart": "cart", "stool": "stool", "bed": "bed", "table": "table",
+                       "pole": "pole", "stand": "stand"}  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class Conditions:
+    """What the physics needs; None is not known.
+
+    Args:
+        humidity: at the place, as a fraction with its doubt.
+        humidity_text: how it was come by, in words.
+        floor, footwear, casters: words of the table of materials.
+        steps: walked before the touch. pause: from the act to the touch [s].
+        object_kind: kind of object on wheels that was touched.
+        voltage, frequency: of the supply [V, Hz]. isolated: True, False or not known.
+        defaults: which of these came from the site file.
+    """
+
+    humidity: Humidity | None
+    humidity_text: str
+    floor: str | None
+    footwear: str | None
+    casters: str | None
+    steps: int | None
+    pause: float | None
+    object_kind: str | None
+    voltage: float
+    voltage_known: bool
+    frequency: float
+    isolated: bool | None
+    defaults: tuple[str, ...]
+
+
+def resolve(incident: Incident, site: Site, touched: tuple[Item, ...]) -> Conditions:
+    """Circumstances from record and site file."""
+    room = site.room(incident.place.room)
+    surroundings, defaults = incident.surroundings, []
+    found: dict[str, str | None] = {}
+    for name, said in (("floor", surroundings.floor), ("footwear", surroundings.footwear),
+                       ("casters", _casters(touched))):  # fmt: skip
+        usual = getattr(room, name) if room else None
+        found[name] = said or usual
+        if said is None and usual is not None:
+            defaults.append(name)
+    humidity, text = _humidity(incident, site)
+    voltage, known = _supply_value(incident, site, "voltage")
+    frequency, _ = _supply_value(incident, site, "frequency")
+    supply = supply_kind(incident, site)
+    rolling = next((i.kind for i in touched if i.kind in OBJECTS), None)
+    pause = incident.event.pause
+    return Conditions(
+        humidity, text, found["floor"], found["footwear"], found["casters"],
+        incident.event.steps, pause.value if pause else None, rolling,
+        voltage, known, frequency, None if supply is None else supply == "isolated",
+        tuple(defaults),
+    )  # fmt: skip
+
+
+def supply_kind(incident: Incident, site: Site) -> str | None:
+    """Earthed, isolated or not known."""
+    room = site.room(incident.place.room)
+    return incident.supply.kind or (room.supply if room else None)
+
+
+def care_area(incident: Incident, site: Site) -> str | None:
+    """Kind of care area, from record or site file."""
+    room = site.room(incident.place.room)
+    return incident.place.area or (room.area if room else None)
+
+
+def _casters(touched: tuple[Item, ...]) -> str | None:
+    return next((i.casters for i in touched if i.kind in OBJECTS and i.casters), None)
+
+
+def assumed(name: str) -> float:
+    """A single assumed value of the table of touch sources, in SI."""
+    row = next(each for each in table("touch_sources")["sources"] if each["id"] == name)
+    value = row["value"]
+    return float(value) if row["kind"] == "share" else parse(str(value), row["kind"]).value
+
+
+def _supply_value(incident: Incident, site: Site, name: str) -> tuple[float, bool]:
+    room = site.room(incident.place.room)
+    said = getattr(incident.supply, name) or (getattr(room, name) if room else None)
+    return (said.value, True) if said else (assumed(f"nominal_{name}"), False)
+
+
+def _humidity(incident: Incident, site: Site) -> tuple[Humidity | None, str]:
+    """Humidity at the place: moved by temperature, doubted by distance in place and time."""
+    s = incident.surroundings
+    if s.humidity is None or s.humidity.bound:
+        return None, "humidity at the place is not known"
+    fraction = s.humidity.value / 100
+    text = f"{s.humidity.text} read"
+    sensor, place = s.temperature_at_sensor, s.temperature_at_place
+    sd = _doubt(incident, site)
+    if sensor and place and s.humidity_where != "at_place":
+        try:
+            fraction = transferred(fraction, sensor.value, place.value)
+            moved = transfer_doubt(fraction, place.value, _SENSOR_SDS)
+        except OutOfRange as error:
+            return None, f"humidity cannot be moved to the place: {error}"
+        sd = max(sd, moved)
+        text += f", moved from {sensor.text} to {place.text}: {fraction * 100:.0f} %"
+    if not 0 < fraction <= 1:
+        return None, f"{text}, which is beyond 0 to 100 %"
+    return Humidity(fraction, sd, "measured"), f"{text}, doubt {sd * 100:.0f} points"
+
+
+def _doubt(incident: Incident, site: Site) -> float:
+    """Near in place and within the hour, or far; not knowing counts as far."""
+    s = incident.surroundings
+    hours = hours_between(s.humidity_at, incident.event.at, site.zone)
+    near = s.humidity_where in ("at_place", "same_room") and hours is not None and hours <= 1.1
+    return NEAR_SD if near else FAR_SD

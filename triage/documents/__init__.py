@@ -1,0 +1,1 @@
+"""One file a document: from an assessment to worded, rounded context."""

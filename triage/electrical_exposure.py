@@ -1,0 +1,256 @@
+"""What current was physically possible under each mains cause, and the ceiling a monitor allows."""
+
+import math
+from collections.abc import Callable
+from dataclasses import dataclass
+from functools import cache, lru_cache
+
+from triage.bounds import Basis, Ceiling, Probability
+from triage.conditions import assumed
+from triage.errors import BadTable
+from triage.estimate import Estimate, through
+from triage.physics.body_impedance import floor_series, hazard_floor, severe_impedance
+from triage.physics.monitors import ceiling_from_hazard, ceiling_from_insulation
+from triage.physics.perception import threshold
+from triage.physics.touch_current import Mains, insulation_fault, open_earth, shunt
+from triage.physics.zones import zone
+from triage.quadrature import gauss_hermite, normal_cdf
+from triage.quantity import parse
+from triage.tables import citation, table
+
+ELECTRICAL_CAUSES = ("open_earth", "insulation_fault", "isolated_first_fault",
+                     "isolated_line_to_line", "outlet_wiring", "live_cord", "earth_difference",
+                     "moisture")  # fmt: skip
+"""Mains causes, each with a model of its touch current."""
+_ORDER = 24
+_CURVES = ("touch", "sensitive")
+
+
+@dataclass(frozen=True, slots=True)
+class ElectricalStory:
+    """The circumstances of one contact, hashable so that equal ones are computed once.
+
+    Args:
+        voltage, frequency: of the supply [V, Hz].
+        medical: the item is a medical device; other items leak more.
+        moisture: dry, water or None for not known (the severe end).
+        series: resistance to earth through shoes and floor [ohm], None for a direct return path.
+        hazard_current: shown by the monitor [A], None if not known or void.
+        insulation: shown by the monitor [ohm], None if not known or void.
+        metal_voltage: measured between the two metals, loaded [V].
+        touch_current: measured at the item, valid [A].
+    """
+
+    voltage: float
+    frequency: float
+    medical: bool = True
+    moisture: str | None = None
+    series: float | None = None
+    hazard_current: float | None = None
+    insulation: float | None = None
+    metal_voltage: float | None = None
+    touch_current: float | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class ElectricalExposure:
+    """One mains cause: current through the person, P(felt), zone of the worst credible case."""
+
+    current: Estimate
+    felt: Probability
+    zone: str
+
+
+@lru_cache(maxsize=4096)
+def electrical_exposure(cause: str, told: ElectricalStory) -> ElectricalExposure:
+    """Touch current of one cause.
+
+    Args:
+        cause: one of `ELECTRICAL_CAUSES`.
+        told: the circumstances.
+    """
+    current = _CURRENTS[cause](told)
+    return ElectricalExposure(current, _felt(current), zone(current.quantile(0.95), None, None))
+
+
+def ceiling(told: ElectricalStory, void: tuple[str, ...]) -> Ceiling | None:
+    """The most that one line can drive through a person to earth, by the monitor's reading.
+
+    Args:
+        told: the circumstances; its reading is used even where `void` says that it binds nothing.
+        void: why the reading binds nothing.
+    """
+    tolerance = assumed("monitor_tolerance")
+    mains = Mains(told.voltage, told.frequency)
+    if told.hazard_current is not None:
+        return Ceiling(ceiling_from_hazard(told.hazard_current, tolerance), "A", void)
+    if told.insulation is not None:
+        return Ceiling(ceiling_from_insulation(mains, told.insulation), "A", void)
+    return None
+
+
+def _felt(current: Estimate) -> Probability:
+    """The curve that feels more easily decides whether it could be felt.
+
+    The interval is P(felt) at the 5 % and 95 % points of the current.
+    """
+    low, high = current.interval()
+    found = []
+    for curve in _CURVES:
+        median, spread, _ = threshold(curve)
+        at = [normal_cdf(math.log(each / median) / spread) for each in (low, high)]
+        found.append(Probability(current.probit(median, spread), at[0], at[1], current.basis))
+    return max(found, key=lambda p: p.value)
+
+
+@cache
+def _assumed(name: str) -> Estimate:
+    """An assumed source of current as an estimate over the named source `assumed_source`."""
+    row = next((each for each in table("touch_sources")["sources"] if each["id"] == name), None)
+    if row is None:
+        raise BadTable(f"data/touch_sources.yaml has no row '{name}'")
+    unit = {"capacitance": "F", "resistance": "ohm", "voltage": "V", "current": "A"}[row["kind"]]
+    basis = {"assumed_source": Basis(row["name"], "default", "", citation(row, name))}
+    if "between" in row:
+        low, high = (parse(text, row["kind"]).value for text in row["between"])
+        span = math.log(high / low)
+        even = Estimate.along(
+            "assumed_source", lambda z: math.log(low) + span * normal_cdf(z),
+            gauss_hermite(_ORDER), unit,
+        )  # fmt: skip
+        return Estimate(even.unit, even.weights, even.logs, {}, even.axes, even.coordinates, basis)
+    median = parse(row["median"], row["kind"]).value
+    return Estimate.lognormal(median, {"assumed_source": float(row["spread"])}, unit, basis)
+
+
+def assumed_names() -> tuple[tuple[str, str], ...]:
+    """Id and plain name of every assumed source, for the list of sources."""
+    return tuple((row["id"], row["name"]) for row in table("touch_sources")["sources"])
+
+
+def _series(told: ElectricalStory) -> complex:
+    if told.series is None:
+        return 0j
+    capacitance = parse(_row("footwear_capacitance")["median"], "capacitance").value
+    return floor_series(told.series, capacitance, told.frequency)
+
+
+def _row(name: str) -> dict[str, str]:
+    return next(each for each in table("touch_sources")["sources"] if each["id"] == name)
+
+
+def _body(told: ElectricalStory) -> Estimate:
+    """Impedance of the body; the severe end for what is not known."""
+    found = severe_impedance(told.voltage, contact=None, moisture=told.moisture)
+    sigma = found.sigma
+    basis = {"body_impedance": Basis("impedance of the body", "default")}
+    return Estimate.lognormal(found.median, {"body_impedance": sigma}, "ohm", basis)
+
+
+def _through_body(source: Estimate, told: ElectricalStory, law: Callable[..., float]) -> Estimate:
+    """A current that depends on an assumed source and on the body, both with their doubt."""
+    return through(law, source, _body(told), unit="A", order=6)
+
+
+def _open_earth(told: ElectricalStory) -> Estimate:
+    if told.touch_current is not None:
+        basis = {"assumed_source": Basis("touch current, measured", "measured")}
+        return Estimate.lognormal(told.touch_current, {"assumed_source": 0.1}, "A", basis)
+    mains, series = Mains(told.voltage, told.frequency), _series(told)
+
+    def law(log_capacitance: float, log_body: float) -> float:
+        leak = shunt(None, math.exp(log_capacitance), mains)
+        return math.log(open_earth(mains, leak, leak).current(math.exp(log_body), series))
+
+    name = "filter_capacitance_medical" if told.medical else "filter_capacitance_other"
+    return _through_body(_assumed(name), told, law)
+
+
+def _insulation_fault(told: ElectricalStory) -> Estimate:
+    mains, series = Mains(told.voltage, told.frequency), _series(told)
+
+    def law(log_fault: float, log_body: float) -> float:
+        source = insulation_fault(mains, fault=math.exp(log_fault), earth=None)
+        return math.log(source.current(math.exp(log_body), series))
+
+    return _through_body(_assumed("insulation_fault"), told, law)
+
+
+def _moisture(told: ElectricalStory) -> Estimate:
+    series = _series(told)
+
+    def law(log_path: float, log_body: float) -> float:
+        total = abs(math.exp(log_path) + math.exp(log_body) + series)
+        return math.log(told.voltage / total)
+
+    return _through_body(_assumed("moisture_path"), told, law)
+
+
+def _earth_difference(told: ElectricalStory) -> Estimate:
+    """Two metals at different potential: the return path never goes through the floor."""
+    if told.metal_voltage is not None and told.metal_voltage > 0:
+        basis = {"assumed_source": Basis("voltage between the metals, measured", "measured")}
+        volts = Estimate.lognormal(told.metal_voltage, {"assumed_source": 0.1}, "V", basis)
+    else:
+        volts = _assumed("earth_difference")
+    return volts.over(_body(told), "A")
+
+
+def _direct(told: ElectricalStory) -> Estimate:
+    """A bare live part: nothing but the body, shoes and floor."""
+    series = _series(told)
+    return through(
+        lambda log_body: math.log(told.voltage / abs(math.exp(log_body) + series)),
+        _body(told),
+        unit="A",
+    )
+
+
+def _line_to_line(told: ElectricalStory) -> Estimate:
+    """Both lines: shoes and floor are not in the path."""
+    return Estimate.exact(told.voltage, "V").over(_body(told), "A")
+
+
+def _isolated_line(told: ElectricalStory) -> Estimate:
+    """One line to earth: the leakage of the whole system, the person's path in series.
+
+    The reading is the most that can flow; the share that does depends on which line leaks.
+    """
+    mains, series = Mains(told.voltage, told.frequency), _series(told)
+    if told.hazard_current is not None and told.hazard_current > 0:
+        basis = {"assumed_source": Basis("monitor reading", "measured")}
+        hazard = Estimate.lognormal(told.hazard_current, {"assumed_source": 0.1}, "A", basis)
+    elif told.insulation is not None and told.insulation > 0:
+        capacitance = _assumed("system_capacitance")
+        hazard = through(
+            lambda c: math.log(
+                mains.voltage * abs(shunt(told.insulation, math.exp(c), mains))
+            ),
+            capacitance, unit="A",
+        )  # fmt: skip
+    else:
+        hazard = _assumed("hazard_current")
+
+    def law(log_hazard: float, log_body: float) -> float:
+        leak = math.exp(log_hazard) / mains.voltage  # |Y2|, taken as capacitive
+        path = abs(math.exp(log_body) + series + 1 / (2j * leak))
+        return math.log(mains.voltage / 2 / path)
+
+    return _through_body(hazard, told, law)
+
+
+_CURRENTS: dict[str, Callable[[ElectricalStory], Estimate]] = {
+    "open_earth": _open_earth,
+    "insulation_fault": _insulation_fault,
+    "isolated_first_fault": _isolated_line,
+    "isolated_line_to_line": _line_to_line,
+    "outlet_wiring": _direct,
+    "live_cord": _direct,
+    "earth_difference": _earth_difference,
+    "moisture": _moisture,
+}
+
+
+def worst_current(voltage: float) -> float:
+    """Upper bound for a direct contact: full voltage over the hazard floor of the body [A]."""
+    return voltage / hazard_floor()

@@ -1,0 +1,273 @@
+"""What was physically possible, for each cause: estimates, P(felt), and its weight in the ranking.
+
+The only place that changes record quantities into physics. A formula out of its published range
+gives unknown with the reason, never a number.
+"""
+
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+from typing import Any
+
+from triage import conditions as c
+from triage.bounds import Ceiling, Probability
+from triage.clock import before
+from triage.conditions import Conditions
+from triage.electrical_exposure import (
+    ELECTRICAL_CAUSES,
+    ElectricalExposure,
+    ElectricalStory,
+    ceiling,
+    electrical_exposure,
+)
+from triage.errors import InvalidValue
+from triage.evidence import involved
+from triage.fields import table
+from triage.incident import Incident, Item, Supply
+from triage.knowledge import Knowledge, knowledge
+from triage.physics.humidity import Humidity
+from triage.site import Site
+from triage.static_exposure import (
+    STATIC_CAUSES,
+    Measured,
+    StaticExposure,
+    static_exposure,
+    story,
+)
+from triage.validity import CheckVerdict, find_item
+
+_MEDICAL = frozenset({"device_mains", "device_battery", "electrosurgical_unit", "bed", "table",
+                      "stimulator_defibrillator", "pole", "stand", "instrument"})  # fmt: skip
+_WIDEST = Conditions(
+    Humidity(0.35, 0.12), "not known: heating season taken, 35 % with a doubt of 12 points",
+    None, None, None, None, None, None, 0.0, False, 0.0, None, (),
+)  # fmt: skip
+_FLOOR_RESISTANCE = {"conductive": 1e6, "dissipative": 1e9}
+
+
+@dataclass(frozen=True, slots=True)
+class CauseExposure:
+    """One cause in the light of physics.
+
+    Args:
+        cause: its id.
+        static: voltages and charges, for a static cause with a model.
+        electrical: current, for a mains cause.
+        felt: P(felt) here, None where there is no model or an input was out of range.
+        factor: weight in the ranking, P(felt) here over P(felt) under reference conditions,
+            within the bounds of the table; 1 without a model.
+        unknown: why there is no estimate.
+    """
+
+    cause: str
+    static: StaticExposure | None
+    electrical: ElectricalExposure | None
+    felt: Probability | None
+    factor: float
+    unknown: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Exposure:
+    """Everything physically possible at one incident.
+
+    Args:
+        conditions: the circumstances it rests on.
+        causes: by cause id, those with or without a model alike.
+        ceiling: what the monitor's reading allows through one line, None without a reading.
+        static_plausible: some static story would be felt often enough; None if not known.
+        notes: what was taken for granted, in words.
+    """
+
+    conditions: Conditions
+    causes: Mapping[str, CauseExposure]
+    ceiling: Ceiling | None
+    static_plausible: bool | None
+    notes: tuple[str, ...]
+
+
+def estimate_exposure(
+    incident: Incident, site: Site, verdicts: tuple[CheckVerdict, ...]
+) -> Exposure:
+    """What was physically possible under every cause.
+
+    Args:
+        incident: the record.
+        site: gives rooms and their defaults.
+        verdicts: judged checks; valid measurements replace assumptions.
+    """
+    k = knowledge()
+    touched, _ = involved(incident)
+    found = c.resolve(incident, site, touched)
+    reference = _reference(k, c.care_area(incident, site))
+    measured = _measured(verdicts)
+    causes = {name: _static(name, found, measured, reference, k) for name in STATIC_CAUSES}
+    told, void = _electrical_story(incident, found, touched, verdicts, site)
+    causes |= {name: _electrical(name, told, found, k) for name in ELECTRICAL_CAUSES}
+    for cause in k.causes:
+        causes.setdefault(cause, CauseExposure(cause, None, None, None, 1.0))
+    return Exposure(
+        found, causes, ceiling(told, void), _plausible(causes, k),
+        tuple(_notes(found, void)),
+    )  # fmt: skip
+
+
+def _reference(k: Knowledge, area: str | None) -> Conditions:
+    """Reference conditions of a care area; of a ward where the area has no row."""
+    row: Mapping[str, Any] = k.reference.get(area or "", k.reference["ward"])
+    return Conditions(
+        Humidity(row["humidity"] / 100, 0.05), "", row["floor"], row["footwear"], row["casters"],
+        int(row["steps"]), 0.0, None, 0.0, False, 0.0, None, (),
+    )  # fmt: skip
+
+
+def _measured(verdicts: tuple[CheckVerdict, ...]) -> Measured:
+    """The largest valid static measurements: they say what the story could have reached."""
+
+    def largest(kind: str) -> float | None:
+        values = [
+            v.value.value
+            for v in verdicts
+            if v.kind and v.kind.id == kind and v.state == "informative" and v.value
+            and v.value.value > 0 and not v.value.bound and not v.as_left
+        ]  # fmt: skip
+        return max(values, default=None)
+
+    return Measured(
+        largest("static_reenactment"), largest("object_voltage_after_rolling"),
+        largest("person_to_ground"), largest("object_to_ground"),
+    )  # fmt: skip
+
+
+def _static(
+    cause: str, found: Conditions, measured: Measured, reference: Conditions, k: Knowledge
+) -> CauseExposure:
+    try:
+        shown = static_exposure(story(cause, found, measured, _WIDEST))
+        weighed = static_exposure(story(cause, found, measured, reference)).felt.value
+        usual = replace(reference, object_kind=found.object_kind)
+        there = static_exposure(story(cause, usual, Measured(), reference)).felt.value
+    except InvalidValue as error:
+        return CauseExposure(cause, None, None, None, 1.0, str(error))
+    return CauseExposure(cause, shown, None, shown.felt, _clipped(weighed, there, k.static_factor))
+
+
+def _electrical(
+    cause: str, told: ElectricalStory, found: Conditions, k: Knowledge
+) -> CauseExposure:
+    """A mains cause; an isolated line needs an isolated supply to have an estimate."""
+    if cause.startswith("isolated_") and found.isolated is False:
+        return CauseExposure(cause, None, None, None, 1.0, "the supply is not isolated")
+    try:
+        here = electrical_exposure(cause, told)
+        weighed = electrical_exposure(cause, replace(told, moisture=told.moisture or "dry"))
+        usual = ElectricalStory(told.voltage, told.frequency, told.medical, "dry")
+        there = electrical_exposure(cause, usual).felt.value
+    except InvalidValue as error:
+        return CauseExposure(cause, None, None, None, 1.0, str(error))
+    factor = _clipped(weighed.felt.value, there, k.mains_factor)
+    return CauseExposure(cause, None, here, here.felt, factor)
+
+
+def _clipped(here: float, there: float, bounds: tuple[float, float]) -> float:
+    low, high = bounds
+    if there <= 0:
+        return 1.0 if here <= 0 else high
+    return min(max(here / there, low), high)
+
+
+def _electrical_story(
+    incident: Incident, found: Conditions, touched: tuple[Item, ...],
+    verdicts: tuple[CheckVerdict, ...], site: Site,
+) -> tuple[ElectricalStory, tuple[str, ...]]:  # fmt: skip
+    supply = incident.supply
+    current, insulation = supply.current_reading, supply.resistance_reading
+    void = tuple(_void(incident, site)) if current or insulation else ()
+    told = ElectricalStory(
+        found.voltage,
+        found.frequency,
+        any(item.kind in _MEDICAL or item.kind is None for item in touched) or not touched,
+        _moisture(incident),
+        _series(incident, found),
+        current.value if current and not void and not current.bound else None,
+        insulation.value if insulation and not void and not insulation.bound else None,
+        _valid_reading(verdicts, "two_metal_voltage"),
+        _valid_reading(verdicts, "touch_current"),
+    )
+    return told, void
+
+
+def _void(incident: Incident, site: Site) -> list[str]:
+    """Why the monitor's reading binds nothing at the time of the event."""
+    supply, reasons = incident.supply, []
+    reasons += [f"{text} is unusual and its unit may be wrong" for text in _unusual(incident)]
+    if supply.changed_since != "no":
+        known = "was" if supply.changed_since == "yes" else "may have been"
+        reasons.append(f"something {known} plugged or unplugged before it was read")
+    if supply.read_at is None:
+        reasons.append("it is not known when it was read")
+    elif before(supply.read_at, incident.event.at, site.zone) is True:
+        reasons.append("it was read before the event")
+    for contact in incident.contacts:
+        items = [find_item(incident, each) for each in contact.items]
+        if any(i is not None and i.supply == "earthed" for i in items):
+            reasons.append("an item was on an earthed supply")
+        if any(i is not None and i.kind in ("cord", "outlet", "adapter_strip") for i in items):
+            reasons.append("both lines may have been touched at a cord, plug or outlet")
+    return reasons
+
+
+def _unusual(incident: Incident) -> list[str]:
+    """Monitor readings outside their plausible range."""
+    rows, found = dict(table(Supply)), []
+    for name in ("current_reading", "resistance_reading"):
+        reading, usual = getattr(incident.supply, name), rows[name].plausible
+        if reading and usual and not usual[0] <= reading.value <= usual[1]:
+            found.append(reading.text)
+    return found
+
+
+def _moisture(incident: Incident) -> str | None:
+    """Dry, or the severe end for anything wet; not known stays None and is shown as severe."""
+    found = {contact.moisture for contact in incident.contacts}
+    if found & {"damp", "wet"}:
+        return "saltwater"
+    return "dry" if found == {"dry"} else None
+
+
+def _series(incident: Incident, found: Conditions) -> float | None:
+    """Shoes and floor in the path only when it is known that nothing else was touched."""
+    contacts = incident.contacts
+    alone = contacts and all(c.also_touching == "nothing" and len(c.items) < 2 for c in contacts)
+    if not alone or found.footwear is None or found.floor is None:
+        return None
+    if found.floor in _FLOOR_RESISTANCE and found.footwear in ("esd", "antistatic"):
+        return _FLOOR_RESISTANCE[found.floor]
+    return 1e8 if found.footwear in ("esd", "antistatic", "leather") else 1e10
+
+
+def _valid_reading(verdicts: tuple[CheckVerdict, ...], kind: str) -> float | None:
+    values = [
+        v.value.value
+        for v in verdicts
+        if v.kind and v.kind.id == kind and v.state in ("valid_pass", "valid_fail")
+        and not v.as_left and v.value and v.value.bound != "<" and v.value.value > 0
+    ]  # fmt: skip
+    return max(values, default=None)
+
+
+def _plausible(causes: Mapping[str, CauseExposure], k: Knowledge) -> bool | None:
+    felt = [e.felt.value for name in STATIC_CAUSES if (e := causes[name]).felt is not None]
+    return max(felt) >= k.plausible_above if felt else None
+
+
+def _notes(found: Conditions, void: tuple[str, ...]) -> list[str]:
+    notes = [found.humidity_text if found.humidity else _WIDEST.humidity_text]
+    if not found.voltage_known:
+        notes.append(f"supply voltage not known: {found.voltage:.0f} V taken")
+    for name in ("floor", "footwear", "casters"):
+        if name in found.defaults:
+            notes.append(f"{name} taken from the site file")
+        elif getattr(found, name) is None and (name != "casters" or found.object_kind):
+            notes.append(f"{name} not known: the widest row taken")
+    notes.extend(f"the monitor's reading binds nothing: {reason}" for reason in void)
+    return notes

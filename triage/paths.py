@@ -1,0 +1,17 @@
+"""Where the package's own files lie, in an installed wheel and in a checkout."""
+
+from importlib.resources import files
+from pathlib import Path
+
+
+def templates() -> Path:
+    """The folder of templates, style sheets and fonts.
+
+    Returns:
+        `triage/templates` of an installed wheel, else `templates/` at the top of the checkout.
+
+    >>> (templates() / "layout.html").is_file()
+    True
+    """
+    inside = Path(str(files("triage"))) / "templates"
+    return inside if inside.is_dir() else Path(__file__).resolve().parent.parent / "templates"

@@ -1,0 +1,1 @@
+"""Pure formulas in SI units, one subject a file."""
