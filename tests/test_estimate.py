@@ -10,7 +10,6 @@ from scipy import integrate, stats
 
 from triage.errors import InvalidValue
 from triage.estimate import Estimate, product, through
-from triage.quadrature import split_normal
 
 SPREADS = st.dictionaries(st.sampled_from("abcd"), st.floats(-1.5, 1.5), max_size=4)
 MEDIANS = st.floats(1e-12, 1e12)
@@ -115,9 +114,11 @@ def test_the_order_of_factors_does_not_matter():
 
 
 def test_two_independent_grids_meet_on_their_product():
-    bent = Estimate.along("h", lambda z: -abs(z), split_normal((0,), 8), "")
+    bent = through(lambda x: -abs(x), Estimate.lognormal(1, {"h": 1.0}, ""), unit="")
     both = load_line(8).times(bent, "V")
-    assert both.variance_log == pytest.approx(load_line(8).variance_log + bent.variance_log)
+    # Corners below 1e-8 are dropped, which costs a few parts in a million of the variance.
+    expected = load_line(8).variance_log + bent.variance_log
+    assert both.variance_log == pytest.approx(expected, rel=1e-5)
 
 
 def test_grids_that_do_not_fit_keep_mean_variance_and_slopes():
@@ -173,8 +174,8 @@ def test_the_posterior_of_a_normal_under_a_density_is_the_textbook_one(sigma, no
     after = prior.given(lambda x: exp(-0.5 * ((x - log(2)) / noise) ** 2), prior)
     share = sigma**2 / (sigma**2 + noise**2)
     if noise > sigma / 1.5:  # the nodes are meant for probits, which are no narrower
-        assert after.mean_log == pytest.approx(share * log(2), abs=1e-3)
-        assert after.variance_log == pytest.approx(share * noise**2, abs=2e-3 * sigma**2)
+        assert after.mean_log == pytest.approx(share * log(2), abs=5e-3)
+        assert after.variance_log == pytest.approx(share * noise**2, abs=5e-3 * sigma**2)
 
 
 def test_the_posterior_given_that_a_charge_was_felt_agrees_with_monte_carlo():

@@ -111,7 +111,13 @@ def test_every_limit_can_be_looked_up_by_its_reader():
 
 @pytest.mark.parametrize(
     "question",
-    [{"check": "touch"}, {"edition": "nfpa99-2049"}, {"condition": "wet"}],
+    [
+        {"check": "touch"},
+        {"edition": "nfpa99-2049"},
+        {"condition": "wet"},
+        {"method": "guess"},
+        {"item": "lamp"},
+    ],
 )
 def test_a_word_the_table_does_not_know_is_refused_not_answered_with_nothing(question):
     with pytest.raises(InvalidValue, match="known"):
@@ -130,6 +136,8 @@ def test_a_word_the_table_does_not_know_is_refused_not_answered_with_nothing(que
         ({"condition": "wet"}, "wet"),
         ({"class": ["III"]}, "III"),
         ({"part": ["D"]}, "D"),
+        ({"method": ["guess"]}, "guess"),
+        ({"item": "lamp"}, "lamp"),
         ({"known": "heard"}, "heard"),
         ({"source": " "}, "source"),
         ({"colour": "red"}, "colour"),

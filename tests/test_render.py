@@ -14,7 +14,7 @@ import page
 import pikepdf
 import pytest
 from fontTools.ttLib import TTFont
-from mock_report import context
+from mock_report import causes_chart, context
 from pypdf import PdfReader
 
 from triage import typeset
@@ -144,15 +144,21 @@ def test_both_faces_cover_the_same_characters() -> None:
         '<img src="file:///etc/hostname">',
         '<img src="data:image/png;base64,iVBORw0KGgo=">',
         '<link rel="attachment" href="file:///etc/passwd">',
-        '<link rel="stylesheet" href="../pyproject.toml">',
+        '<link rel="attachment" href="layout.html">',
+        '<link rel="stylesheet" href="../triage/site.css">',
+        '<link rel="stylesheet" href="//192.0.2.1/document.css">',
         '<style>@import "https://192.0.2.1/a.css";</style>',
         '<style>@font-face{font-family:x;src:url("file:///etc/passwd")}</style>',
-        '<svg width="9" height="9"><image href="http://192.0.2.1/a.png" width="9"/></svg>',
     ],
 )
 def test_an_address_in_a_document_stops_it(body: str) -> None:
-    with pytest.raises(InvalidValue, match="document"):
+    with pytest.raises(InvalidValue, match="own files"):
         pdf(paragraph(body))
+
+
+def test_a_picture_that_cannot_be_drawn_is_an_error_and_never_a_gap() -> None:
+    with pytest.raises(InvalidValue, match="drawn whole"):
+        pdf(paragraph('<svg width="9" height="9"><image href="http://192.0.2.1/a.png"/></svg>'))
 
 
 def test_hostile_text_is_printed_as_typed_and_carries_no_file_in() -> None:
@@ -202,6 +208,12 @@ def test_no_stream_ends_where_a_reader_could_miscount_it(number: int, tmp_path: 
 )
 def test_what_could_act_is_shown_as_its_code(typed: str, shown: str) -> None:
     assert visible(typed) == shown
+
+
+def test_typed_text_is_marked_in_html_too() -> None:
+    html = hostile()
+
+    assert "[U+202E]right to left[U+202C]" in html and "\u202e" not in html and "\x07" not in html
 
 
 def test_a_character_without_a_glyph_is_told_and_printed_as_its_code() -> None:
@@ -254,6 +266,14 @@ def test_lettering_in_charts_is_whole_words_in_the_text_layer(full: RenderedPdf)
 
     assert "Second fault on the isolated supply" in text
     assert "relative humidity, %" in text and "100 µA" in text
+
+
+def test_each_piece_of_lettering_is_drawn_in_one_run() -> None:
+    svg = causes_chart()
+    content = PdfReader(io.BytesIO(pdf(paragraph(svg)).content)).pages[0].get_contents()
+
+    assert content is not None
+    assert content.get_data().count(b"TJ") == svg.count("<text") > 10
 
 
 def test_page_one_answers_in_order_on_one_page(full: RenderedPdf) -> None:

@@ -300,6 +300,26 @@ def test_what_no_supply_is_gets_refused():
         isolated(GOOD, GOOD, GOOD)
     with pytest.raises(InvalidValue, match="isolated"):
         monitor_view(Room(supply=earthed()))
+    with pytest.raises(InvalidValue, match="neutral"):
+        earthed(neutral=0)
+
+
+@pytest.mark.parametrize(
+    "make",
+    [
+        lambda: Leak(0),
+        lambda: Leak(-1, 1e-9),
+        lambda: Leak(None, -1e-9),
+        lambda: Leak(None, float("nan")),
+        lambda: Device(name="x", earth=0),
+        lambda: Device(name="x", load=-5),
+        lambda: Room(supply=earthed(), devices=(Device(name="x"), Device(name="x"))),
+        lambda: Room(supply=earthed(), devices=(Device(name="L1"),)),
+    ],
+)
+def test_what_no_leak_or_conductor_is_gets_refused(make):
+    with pytest.raises(InvalidValue):
+        make()
 
 
 leak = st.builds(Leak, st.one_of(st.none(), st.floats(1e3, 1e8)), st.floats(1e-12, 1e-6))

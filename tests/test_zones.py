@@ -58,6 +58,7 @@ def test_a_line_is_not_extended_below_ten_milliseconds(seconds):
         (5, 10, "left_hand_feet", "AC-3"),
         (40, 10, "left_hand_feet", "AC-4"),
         (40, 10, "hand_hand", "AC-3"),  # 16 mA for the heart, but the muscles carry all 40
+        (7, 10, "hand_hand", "AC-3"),  # the path does not weigh on the line of the muscles
         (40, 10, None, "AC-4"),
         (30, None, None, "AC-4"),  # unknown path counts 1.5
         (400, 0.001, "left_hand_feet", "AC-3"),

@@ -18,13 +18,18 @@ def canonical(tree: Any) -> bytes:
     """The one byte form of a tree of dicts, lists and texts.
 
     Raises:
-        InvalidValue: anything else than dict, list and text, or a key that is not text.
+        InvalidValue: anything else than dict, list and text, a key that is not text, or a lone
+            surrogate.
 
     >>> canonical({"b": ["1.9 mA"], "a": "x"})
     b'{"a":"x","b":["1.9 mA"]}'
     """
     _only_text(tree)
-    return json.dumps(tree, ensure_ascii=False, sort_keys=True, separators=(",", ":")).encode()
+    text = json.dumps(tree, ensure_ascii=False, sort_keys=True, separators=(",", ":"))
+    try:
+        return text.encode()
+    except UnicodeEncodeError:
+        raise InvalidValue("a text holds half a character (a lone surrogate)") from None
 
 
 def _only_text(tree: Any) -> None:

@@ -13,10 +13,12 @@ from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
 from triage.errors import InvalidValue
 
 _PARTS = {"night": (0, 6), "morning": (6, 12), "afternoon": (12, 18), "evening": (18, 24)}
+# Years 1900 to 2199 only: at the ends of the calendar an interval in UTC does not exist.
 _SHAPE = re.compile(
-    r"(?P<day>\d{4}-\d{2}-\d{2})"
+    r"(?P<day>(?:19|2[01])\d{2}-\d{2}-\d{2})"
     r"(?:[ T](?P<hour>\d{2})(?:(?P<whole>h)|:(?P<minute>\d{2}))(?P<offset>Z|[-+]\d{2}:\d{2})?"
-    r"|[ ](?P<part>night|morning|afternoon|evening))?"
+    r"|[ ](?P<part>night|morning|afternoon|evening))?",
+    re.ASCII,
 )
 EXAMPLE = "2026-01-14 07:20, 2026-01-14 07h, 2026-01-14 morning or 2026-01-14"
 """How a time may be typed."""

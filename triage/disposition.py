@@ -14,7 +14,7 @@ from triage.diagnosis import CONFLICT_BLOCKS, RESIDUAL, Posterior
 from triage.evidence import FIXED, Evidence, Observed, required_checks
 from triage.exposure import Exposure
 from triage.incident import Incident, Item
-from triage.knowledge import Cause, knowledge
+from triage.knowledge import Cause, Finding, knowledge
 from triage.red_flags import Flag
 from triage.release_gate import deciding_posterior, release_threshold, upper_mains
 from triage.site import Site
@@ -202,7 +202,7 @@ def _answers_shut(given: Inputs) -> Iterator[str]:
         seen = observed.get(finding.id)
         if seen is None:
             yield f"not known: {finding.name}"
-        elif finding.reassuring and seen.state not in finding.reassuring:
+        elif finding.reassuring and not _acceptable(finding, seen.state, given):
             yield f"not reassuring: {finding.name}, {seen.state.replace('_', ' ')}"
     if given.supply is None:
         yield "not known: earthed or isolated supply"
@@ -212,6 +212,14 @@ def _answers_shut(given: Inputs) -> Iterator[str]:
                         (shoes_or_wheels, "footwear or wheels")):  # fmt: skip
         if value is None:
             yield f"not known: {name}"
+
+
+def _acceptable(finding: Finding, state: str, given: Inputs) -> bool:
+    """Reassuring, or adverse with every red flag that it raised cleared by checks."""
+    if state in finding.reassuring:
+        return True
+    raised = [f for f in given.flags if (finding.id, state) in f.flag.findings]
+    return bool(raised) and all(f.cleared for f in raised)
 
 
 _SURROUNDINGS = frozenset({"humidity", "ground_path"})

@@ -14,7 +14,7 @@ from triage.physics.monitors import ceiling_from_hazard, ceiling_from_insulation
 from triage.physics.perception import threshold
 from triage.physics.touch_current import Mains, insulation_fault, open_earth, shunt
 from triage.physics.zones import zone
-from triage.quadrature import gauss_hermite, normal_cdf
+from triage.quadrature import normal_cdf
 from triage.quantity import parse
 from triage.tables import citation, table
 
@@ -114,11 +114,10 @@ def _assumed(name: str) -> Estimate:
     if "between" in row:
         low, high = (parse(text, row["kind"]).value for text in row["between"])
         span = math.log(high / low)
-        even = Estimate.along(
-            "assumed_source", lambda z: math.log(low) + span * normal_cdf(z),
-            gauss_hermite(_ORDER), unit,
-        )  # fmt: skip
-        return Estimate(even.unit, even.weights, even.logs, {}, even.axes, even.coordinates, basis)
+        score = Estimate.lognormal(1.0, {"assumed_source": 1.0}, "", basis)  # ln value = z
+        return through(
+            lambda z: math.log(low) + span * normal_cdf(z), score, unit=unit, order=_ORDER
+        )
     median = parse(row["median"], row["kind"]).value
     return Estimate.lognormal(median, {"assumed_source": float(row["spread"])}, unit, basis)
 

@@ -21,7 +21,7 @@ from operator import mul
 from triage.bounds import Basis, Probability
 from triage.errors import InvalidValue
 from triage.grid import Axis, Joint, join, refined, reweighted
-from triage.quadrature import NodeSet, normal_cdf, normal_quantile
+from triage.quadrature import normal_cdf, normal_quantile
 
 NARROW = 1e-3
 """A lognormal part below this share of the whole spread is not seen between the nodes."""
@@ -29,7 +29,7 @@ NARROW = 1e-3
 
 @dataclass(frozen=True, slots=True)
 class Estimate:
-    """A positive quantity with its doubt; build it with `lognormal`, `exact` or `along`.
+    """A positive quantity with its doubt; build it with `lognormal` or `exact`.
 
     Args:
         unit: SI symbol.
@@ -83,22 +83,6 @@ class Estimate:
     def exact(cls, value: float, unit: str) -> "Estimate":
         """A value without doubt, above 0."""
         return cls.lognormal(value, {}, unit)
-
-    @classmethod
-    def along(
-        cls, name: str, log_function: Callable[[float], float], nodes: NodeSet, unit: str
-    ) -> "Estimate":
-        """A value that follows one named source by a formula, kept at the nodes given.
-
-        Args:
-            name: the source.
-            log_function: ln value at z standard deviations of that source.
-            nodes: (weight, z), for instance split at the kinks of the formula.
-            unit: SI symbol.
-        """
-        positions = tuple(z for _, z in nodes)
-        logs = tuple(map(log_function, positions))
-        return cls(unit, tuple(w for w, _ in nodes), logs, {}, (((name, 1.0),),), (positions,))
 
     @property
     def nodes(self) -> tuple[tuple[float, float], ...]:
@@ -165,7 +149,7 @@ class Estimate:
         Raises:
             InvalidValue: the observation is impossible everywhere.
         """
-        grid = refined(join(of), order=12)
+        grid = refined(join(of), order=12 if of.axes else 40)
         seen = _on(grid, of.unit, grid.logs[0], {}, of.basis)
         joint = join(seen, self)
         likelihoods = [likelihood(x) for x in joint.logs[0]]

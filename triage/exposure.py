@@ -111,6 +111,11 @@ def estimate_exposure(
     )  # fmt: skip
 
 
+def widest_conditions() -> Conditions:
+    """What is taken for print where nothing is known: the widest rows, heating-season air."""
+    return _WIDEST
+
+
 def _reference(k: Knowledge, area: str | None) -> Conditions:
     """Reference conditions of a care area; of a ward where the area has no row."""
     row: Mapping[str, Any] = k.reference.get(area or "", k.reference["ward"])

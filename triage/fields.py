@@ -27,6 +27,11 @@ NO_ADVERSE: WordList = {"yes": (-1, "yes"), "no": (1, "no")}
 _IDENT = re.compile(r"[A-Za-z0-9][A-Za-z0-9_.-]{0,39}")
 
 
+def is_unknown(raw: Any) -> bool:
+    """Whether a scalar as typed says that the answer is not known."""
+    return isinstance(raw, str) and raw.strip().lower() in UNKNOWN
+
+
 @dataclass(frozen=True, slots=True)
 class Field:
     """One row of the table of fields.
@@ -169,7 +174,7 @@ class Reader:
     def build(self, record_class: type, tree: Any, path: str) -> Any:
         """One record object from a mapping; unknown fields are faults."""
         if not isinstance(tree, dict):
-            if tree not in UNKNOWN:
+            if not is_unknown(tree):
                 self.fault(path, f"expected fields under it, found '{_short(tree)}'")
             return record_class() if not _required(record_class) else None
         rows = dict(table(record_class))
@@ -195,7 +200,7 @@ class Reader:
                 path, f"expected one value, found a {'list' if isinstance(raw, list) else 'group'}"
             )
             return None
-        if raw.strip() in UNKNOWN:
+        if is_unknown(raw):
             return None
         try:
             return self._scalar(row, raw, path)
@@ -204,7 +209,7 @@ class Reader:
             return None
 
     def _list(self, row: Field, raw: Any, path: str) -> tuple[Any, ...] | None:
-        if isinstance(raw, str) and raw.strip() in UNKNOWN:
+        if is_unknown(raw):
             return None
         if not isinstance(raw, list):
             self.fault(path, f"expected a list, found '{_short(raw)}'")
@@ -219,7 +224,16 @@ class Reader:
             value = self.build(row.of, item, below) if row.of else self._value(each, item, below)
             if value is not None:
                 found.append(value)
+        if not row.of and isinstance(raw, list):
+            self._one_answer_each(raw, found, path)
         return tuple(found)
+
+    def _one_answer_each(self, raw: list[Any], found: list[Any], path: str) -> None:
+        """A word twice is a slip; "unknown" beside a word would leave the reassuring one alone."""
+        if len(set(found)) < len(found):
+            self.fault(path, f"a word stands twice: {', '.join(found)}")
+        if found and any(is_unknown(each) for each in raw):
+            self.fault(path, "'unknown' stands beside an answer; keep the one or the others")
 
     def _scalar(self, row: Field, raw: str, path: str) -> Any:
         if row.kind == "word":
@@ -269,15 +283,16 @@ def _short(raw: Any) -> str:
 
 
 def _word(row: Field, raw: str) -> str:
-    found = raw.strip().lower().replace(" ", "_").replace("-", "_")
-    if found not in row.words:
+    plain = raw.strip().lower().replace(" ", "_").replace("-", "_")
+    found = next((word for word in row.words if word.lower() == plain), None)
+    if found is None:
         raise InvalidValue(f"'{_short(raw)}' is not one of: {', '.join(row.words)}, unknown")
     return found
 
 
 def _count(row: Field, raw: str) -> int:
     low, high = row.possible or (0, 10_000)
-    if not re.fullmatch(r"\d{1,9}", raw.strip()) or not low <= int(raw) <= high:
+    if not re.fullmatch(r"[0-9]{1,9}", raw.strip()) or not low <= int(raw) <= high:
         raise InvalidValue(f"'{_short(raw)}' is not a whole number from {low:g} to {high:g}")
     return int(raw)
 

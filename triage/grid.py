@@ -144,8 +144,9 @@ def _merge(joint: Joint, other: Mixture) -> Joint:
 def _crossed(joint: Joint, other: Mixture, pairs: list[tuple[int, int, float]]) -> Joint:
     """The grid of the node pairs that meet."""
     fresh = [k for k, axis in enumerate(other.axes) if axis not in joint.axes]
+    total = sum([w for _, _, w in pairs])
     grid = Joint(
-        tuple([w for _, _, w in pairs]),
+        tuple([w / total for _, _, w in pairs]),
         (),
         joint.loadings,
         joint.axes + tuple(other.axes[k] for k in fresh),

@@ -3,6 +3,7 @@
 A limit that is not `published` never prints without `Limit.warning`. Verdicts: verdict.py.
 """
 
+from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache
@@ -26,6 +27,21 @@ CLASSES = ("I", "II", ANY)
 
 PARTS = ("B", "BF", "CF", ANY)
 """Types of applied part."""
+
+METHODS = (
+    "touch", "direct", "differential", "alternative", "direct_dc", "all_parts_joined",
+    "all_parts_joined_dc", "auxiliary", "signal_part", ANY,
+)  # fmt: skip
+"""Ways of measuring a current; `direct` of an applied part is its patient leakage."""
+
+ITEMS = (
+    "general", "without_cord", "cord", "permanently_installed", "system", "fixed_metal",
+    "documented_exception", "portable", "stationary_motor", "no_earthed_accessible_parts",
+    "mobile_xray", "mobile_xray_with_extra_earth", "mineral_insulated_heater", "applied_part",
+    "existing_or_isolated_ground", "existing_critical_care", "existing_general_care",
+    "flammables_or_fast_charging", "conductive_class", "antistatic_class",
+)  # fmt: skip
+"""Sorts of item, or parts of it measured, that have values of their own."""
 
 SENSES = ("max", "min")
 """Which side of the value a reading must not be on."""
@@ -153,7 +169,7 @@ class Limits:
         Raises:
             InvalidValue: a word that no row or list knows.
         """
-        self._known(check, edition, condition)
+        self._known(check, edition, condition, method, item)
         return tuple(
             row
             for row in self.rows
@@ -167,14 +183,13 @@ class Limits:
 
     def choices(self, check: str) -> tuple[Edition, ...]:
         """Editions that have a row for this check, in file order: what a site can choose from."""
-        self._known(check, None, None)
+        self._known(check)
         ids = dict.fromkeys(row.edition.id for row in self.rows if row.check == check)
         return tuple(self.editions[each] for each in ids)
 
-    def _known(self, check: str | None, edition: str | None, condition: str | None) -> None:
-        for word, known in (
-            (check, CHECKS), (edition, tuple(self.editions)), (condition, CONDITIONS),
-        ):  # fmt: skip
+    def _known(self, check: str | None, *others: str | None) -> None:
+        lists = (CHECKS, tuple(self.editions), CONDITIONS, METHODS, ITEMS)
+        for word, known in zip((check, *others), lists, strict=False):
             if word is not None and word not in known:
                 raise InvalidValue(f"limits know no '{word}'; known: {', '.join(known)}")
 
@@ -243,11 +258,11 @@ def _limit(given: dict[str, Any], editions: dict[str, Edition]) -> Limit:
         kind=given["kind"],
         edition=editions[given["edition"]],
         clause=str(given["clause"]),
-        methods=_words(given.get("method"), None, where),
+        methods=_words(given.get("method"), METHODS, where),
         conditions=_words(given.get("condition"), CONDITIONS, where),
         classes=_words(given.get("class"), CLASSES, where),
         parts=_words(given.get("part"), PARTS, where),
-        item=given.get("item", "general"),
+        item=_words(given.get("item", "general"), ITEMS, where)[0],
         sense=given["sense"],
         strict=given.get("strict", False),
         value=value.value,
@@ -258,9 +273,9 @@ def _limit(given: dict[str, Any], editions: dict[str, Edition]) -> Limit:
     )
 
 
-def _words(given: Any, known: tuple[str, ...] | None, where: str) -> tuple[str, ...]:
+def _words(given: Any, known: tuple[str, ...], where: str) -> tuple[str, ...]:
     found = (ANY,) if given is None else (given,) if isinstance(given, str) else tuple(given)
-    strange = [word for word in found if known is not None and word not in known]
+    strange = [word for word in found if word not in known]
     if strange or not found:
         raise BadTable(f"{where}: unknown word {strange}; known: {known}")
     return found
@@ -273,7 +288,7 @@ def _check_words(given: dict[str, Any], needed: set[str], free: set[str]) -> Non
 
 
 def _check_unique(ids: list[str]) -> None:
-    twice = sorted({each for each in ids if ids.count(each) > 1})
+    twice = sorted(each for each, count in Counter(ids).items() if count > 1)
     if twice:
         raise BadTable(f"limits.yaml: ids given twice: {', '.join(twice)}")
 
@@ -286,14 +301,15 @@ def _place_of(row: Limit) -> tuple[Any, ...]:
 
 
 def _check_one_value(rows: tuple[Limit, ...]) -> None:
-    plain = [_place_of(row) for row in rows if not row.disputed]
-    twice = {place[:3] for place in plain if plain.count(place) > 1}
+    plain = Counter(_place_of(row) for row in rows if not row.disputed)
+    twice = sorted(str(place[:3]) for place, count in plain.items() if count > 1)
     if twice:
-        raise BadTable(f"limits.yaml: two undisputed values for {sorted(twice)}")
+        raise BadTable(f"limits.yaml: two undisputed values for {', '.join(twice)}")
 
 
 def _check_disputes(rows: tuple[Limit, ...]) -> None:
+    disputed = Counter(_place_of(row) for row in rows if row.disputed)
     for row in rows:
-        others = [each for each in rows if each.disputed and _place_of(each) == _place_of(row)]
-        if row.disputed and len(others) < 2 and "print" not in row.note:
+        alone = row.disputed and disputed[_place_of(row)] < 2
+        if alone and "print" not in row.note:
             raise BadTable(f"limits.yaml: {row.id} is disputed by no other row and no note")

@@ -15,7 +15,7 @@ from triage.material_rows import KINDS, Quantity, Row, read_quantity, read_respo
 from triage.physics.charging import Mover
 from triage.physics.humidity import Humidity, Response, resistance_factor
 
-QUANTITY_TABLES = ("walking", "rolling", "sensation")
+QUANTITY_TABLES = ("walking", "rolling", "sensation", "held_metal")
 """Tables that map a word to one quantity."""
 
 ROW_TABLES = ("floors", "footwear", "casters", "acts", "seats", "garments", "bodies", "objects")
@@ -31,6 +31,7 @@ class Materials:
     walking: Mapping[str, Quantity]
     rolling: Mapping[str, Quantity]
     sensation: Mapping[str, Quantity]
+    held_metal: Mapping[str, Quantity]
     floors: Mapping[str, Row]
     footwear: Mapping[str, Row]
     casters: Mapping[str, Row]
@@ -59,6 +60,10 @@ class Materials:
         quantity = row.the("resistance")
         dry = quantity.estimate(f"{names[table]}_resistance", row.text)
         return dry.times(resistance_factor(humidity, quantity.decades), "ohm")
+
+    def coupling(self) -> Estimate:
+        """Capacitance between an object and the person behind its plastic handle [F]."""
+        return self.rolling["coupling"].estimate("coupling_capacitance", "person beside object")
 
     def doubt(self) -> Estimate:
         """Factor on every modelled voltage for what the model does not know."""
@@ -146,11 +151,12 @@ class Materials:
         volts = row.the("voltage").estimate("quick_act_voltage", row.text)
         return volts.times(self.responses[row.response].factor(humidity), "V")
 
-    def threshold(self, sensation: str) -> Estimate:
+    def threshold(self, sensation: str, *, held_metal: bool = False) -> Estimate:
         """Charge [C] or voltage [V] at which a sensation begins, over people and over our doubt.
 
         Args:
             sensation: row of `sensation`.
+            held_metal: True if the spark went to metal held in the hand, which spreads it.
         """
         quantity = self.sensation.get(sensation)
         if quantity is None:
@@ -159,7 +165,10 @@ class Materials:
         name, note = f"{sensation}_threshold", f"times or divided by {quantity.doubt_gsd:g}"
         basis = {name: Basis(f"threshold: {sensation}", "default", note, quantity.citation)}
         doubt = Estimate.lognormal(1.0, {name: log(quantity.doubt_gsd)}, "", basis)
-        return people.times(doubt, quantity.unit)
+        found = people.times(doubt, quantity.unit)
+        if held_metal and quantity.unit == "C":
+            return found.scaled(self.held_metal["charge"].median)
+        return found
 
     def citations(self) -> dict[str, Citation]:
         """Every number that can be printed, by its path in the tables."""

@@ -19,6 +19,8 @@ MOST = 12
 """Longest list printed beyond the mandatory checks (judgement: one page)."""
 _ISOLATED_ONLY = frozenset({"isolated_line_voltages", "isolated_alarm_test", "plug_step_test",
                             "monitor_log"})  # fmt: skip
+_POWERED_ONLY = frozenset({"earth_continuity", "earth_in_place", "touch_current",
+                           "insulation_resistance"})  # fmt: skip
 _STATIC_ONLY = frozenset({"object_to_ground", "object_voltage_after_rolling", "static_reenactment",
                           "person_to_ground", "floor_resistance", "caster_resistance",
                           "footwear_resistance"})  # fmt: skip
@@ -89,11 +91,12 @@ def _useful(kind: CheckKind, item: Item, given: Inputs) -> bool:
     """Whether an optional check fits the item and has not been made."""
     if kind.finding is None or item.kind not in kind.applies_to:
         return False
-    if kind.id in _ISOLATED_ONLY and item_supply(item, given.supply) == "earthed":
+    supply = item_supply(item, given.supply)
+    if kind.id in _ISOLATED_ONLY and supply not in ("isolated", None):
         return False
-    if kind.id == "outlet_test" and given.supply == "isolated":
+    if kind.id == "outlet_test" and supply not in ("earthed", None):
         return False
-    if kind.id in ("earth_continuity", "earth_in_place", "touch_current") and not is_powered(item):
+    if kind.id in _POWERED_ONLY and not is_powered(item):
         return False
     if kind.id in _STATIC_ONLY and not (item.kind in OBJECTS or item.kind in FIXED):
         return kind.id == "static_reenactment"

@@ -3,17 +3,13 @@
 Pure Python and cached, because a single incident must not wait for a numerical library.
 """
 
-from collections.abc import Sequence
 from functools import cache
-from math import cos, erfc, exp, log, pi, pow, sqrt
+from math import erfc, exp, log, pi, pow, sqrt
 
 from triage.errors import InvalidValue
 
 NodeSet = tuple[tuple[float, float], ...]
 """Pairs (weight, position in standard deviations); the weights sum to 1."""
-
-FAR = 8.5
-"""Standard deviations beyond which the normal law holds less than 1e-16 and is cut off."""
 
 
 def normal_density(z: float) -> float:
@@ -102,55 +98,3 @@ def _hermite(order: int, z: float) -> tuple[float, float]:
     for k in range(order):
         below, here = here, (z * here - sqrt(k) * below) / sqrt(k + 1)
     return here, below
-
-
-@cache
-def gauss_legendre(order: int) -> NodeSet:
-    """Nodes on -1 to 1 with weights that sum to 1 (half the usual ones).
-
-    Source:
-        Press and others, Numerical Recipes, 4.5 (Newton from the cosine start).
-
-    >>> round(sum(w * x * x for w, x in gauss_legendre(4)), 12)  # mean of x^2 is 1/3
-    0.333333333333
-    """
-    found = []
-    for i in range(order):
-        x = cos(pi * (i + 0.75) / (order + 0.5))
-        for _ in range(6):
-            value, slope = _legendre(order, x)
-            x -= value / slope
-        slope = _legendre(order, x)[1]
-        found.append((1 / ((1 - x * x) * slope * slope), x))
-    return tuple(found)
-
-
-def _legendre(order: int, x: float) -> tuple[float, float]:
-    """Legendre polynomial of degree `order` and its slope at x."""
-    below, here = 1.0, x
-    for k in range(2, order + 1):
-        below, here = here, ((2 * k - 1) * x * here - (k - 1) * below) / k
-    return here, order * (x * here - below) / (x * x - 1)
-
-
-def split_normal(kinks: Sequence[float], order: int) -> NodeSet:
-    """Nodes for the normal law when the integrand bends at known positions.
-
-    Args:
-        kinks: positions in standard deviations; none of them lies inside a panel afterwards.
-        order: nodes in each panel.
-
-    >>> nodes = split_normal((0.5,), 16)
-    >>> round(sum(w * max(z - 0.5, 0) for w, z in nodes), 9)  # density - 0.5 (1 - cdf)
-    0.197796557
-    """
-    inside = sorted(k for k in kinks if -FAR < k < FAR)
-    edges = sorted({-FAR, -3.0, 0.0, 3.0, FAR, *inside})
-    nodes = [
-        ((b - a) * w * normal_density(z), z)
-        for a, b in zip(edges, edges[1:], strict=False)
-        for w, x in gauss_legendre(order)
-        for z in ((a + b) / 2 + (b - a) / 2 * x,)
-    ]
-    total = sum(w for w, _ in nodes)
-    return tuple((w / total, z) for w, z in nodes)

@@ -60,9 +60,12 @@ _EXAMPLE = {
     "humidity_points": "3 points", "temperature": "21 degC", "temperature_difference": "2 K",
 }  # fmt: skip
 
+# Escapes, since editors merge the look-alikes: micro sign, Greek mu, ohm sign to Greek omega.
+_ONE_SPELLING = str.maketrans({"\u00b5": "u", "\u03bc": "u", "\u2126": "\u03a9"})
 _SHAPE = re.compile(
     r"(?P<bound>[<>≤≥])?\s*(?P<number>[-+−]?(?:\d+(?:[.,]\d*)?|[.]\d+)(?:[eE][-+]?\d+)?)"
-    r"\s*(?P<unit>\D.*)?"
+    r"\s*(?P<unit>\D.*)?",
+    re.ASCII,
 )
 
 
@@ -87,20 +90,17 @@ def _number(text: str) -> float:
     """A decimal number; a comma only where it cannot be a thousands mark.
 
     Raises:
-        InvalidValue: a comma that could be either, or no finite number.
+        InvalidValue: a comma that could be either.
     """
     plain = text.replace("−", "-")
     if re.fullmatch(r"[-+]?[1-9]\d{0,2},\d{3}", plain):
         raise InvalidValue(f"'{text}' could be a decimal or a thousands mark; write a point")
-    value = float(plain.replace(",", "."))
-    if not math.isfinite(value):
-        raise InvalidValue(f"'{text}' is not a finite number")
-    return value
+    return float(plain.replace(",", "."))
 
 
 def _normal_unit(unit: str) -> str:
     """One spelling for the micro sign and the ohm sign."""
-    return unit.strip().replace("µ", "u").replace("μ", "u").replace("Ω", "Ω")
+    return unit.strip().translate(_ONE_SPELLING)
 
 
 def parse(text: str, kind: str) -> Quantity:
@@ -133,6 +133,8 @@ def parse(text: str, kind: str) -> Quantity:
             f"'{unit}' is not a unit of {kind.replace('_', ' ')}; write it like '{_EXAMPLE[kind]}'"
         )
     value = _number(match["number"]) * _UNITS[kind][unit]
+    if not math.isfinite(value):
+        raise InvalidValue(f"'{text}' is not a finite number")
     if kind == "temperature":
         value = _celsius(value, unit)
     bound = {"≤": "<", "≥": ">"}.get(match["bound"] or "", match["bound"] or "")

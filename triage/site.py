@@ -3,6 +3,7 @@
 It may tighten and choose; it never loosens. What it changes is printed on every report.
 """
 
+import re
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -33,7 +34,12 @@ SHIPPED_MISS_RATIO = 100
 """Miss against needless hold where the site says nothing: a day's loan device against a
 possible serious injury (judgement)."""
 
-_FORBIDDEN = ("http:", "https:", "file:", "{{", "{%", "../", "<script", "\\")
+_FORBIDDEN = re.compile(
+    r"[a-z]:/|[a-z]{2,}:/|javascript:|data:|mailto:|www[.]|(?:^|\s)[~.]{0,2}/\w|[.][.]/|\\"
+    r"|[{][{%#]|[%#}][}]|[$][{]|</?[a-z!]",
+    re.IGNORECASE,
+)
+"""Addresses, paths, template marks and markup."""
 _PAPER: WordList = {"A4": (None, "210 by 297 mm"), "Letter": (None, "8.5 by 11 in")}
 _DUTY: WordList = {
     "us_device": (None, "US medical-device reporting"),
@@ -258,6 +264,16 @@ def _check(reader: Reader, file: SiteFile) -> None:
             if name in seen:
                 reader.fault(f"rooms[{number}].id", f"'{name}' names two rooms")
             seen.add(name)
+    _check_once(reader, "editions", [each.check for each in file.editions])
+    _check_once(reader, "tightened", [each.limit for each in file.tightened])
+    _check_once(reader, "policy.raised", [each.cause for each in file.policy.raised])
+
+
+def _check_once(reader: Reader, path: str, ids: list[str]) -> None:
+    """Two rows for one thing: nobody could say which of them is in force."""
+    for number, each in enumerate(ids):
+        if each in ids[:number]:
+            reader.fault(f"{path}[{number}]", f"'{each}' stands twice")
 
 
 def _refuse_paths(reader: Reader, tree: object, path: str) -> None:
@@ -269,6 +285,7 @@ def _refuse_paths(reader: Reader, tree: object, path: str) -> None:
         for number, value in enumerate(tree):
             _refuse_paths(reader, value, f"{path}[{number}]")
     elif isinstance(tree, str):
-        found = next((mark for mark in _FORBIDDEN if mark in tree.lower()), None)
+        found = _FORBIDDEN.search(tree)
         if found:
-            reader.fault(path, f"'{found}' is not allowed; a site file holds plain words only")
+            mark = found[0].strip()
+            reader.fault(path, f"'{mark}' is not allowed; a site file holds plain words only")

@@ -54,9 +54,7 @@ def read(path: Path) -> Plain:
         reason = error.strerror or "cannot be opened"
         raise CannotRead(f"{path}: {reason}; give the path of a YAML file") from None
     if len(data) > MOST_BYTES:
-        raise BadRecord(
-            [f"{path}: larger than {MOST_BYTES // 1_000_000} MB, so it is not a record"]
-        )
+        raise BadRecord([_too_large(str(path))])
     try:
         text = data.decode("utf-8-sig")
     except UnicodeDecodeError as error:
@@ -64,6 +62,10 @@ def read(path: Path) -> Plain:
             [f"{path}: byte {error.start} is not UTF-8; save the file as UTF-8"]
         ) from None
     return parse(text, str(path))
+
+
+def _too_large(name: str) -> str:
+    return f"{name}: larger than {MOST_BYTES // 1_000_000} MB, so it is not a record"
 
 
 def parse(text: str, name: str) -> Plain:
@@ -74,6 +76,9 @@ def parse(text: str, name: str) -> Plain:
     """
     import yaml
 
+    if len(text) > MOST_BYTES:
+        raise BadRecord([_too_large(name)])
+    text = text.removeprefix("\ufeff")
     bad = _BAD_CHARACTERS.search(text)
     if bad:
         line = text.count("\n", 0, bad.start()) + 1
@@ -121,6 +126,10 @@ class _Builder:
             self._refuse(event, f"anchor '&{event.anchor}'; write the value out")
         if event.tag and event.tag != "!":
             self._refuse(event, f"tag '{event.tag}'; plain values only")
+        # An escape such as "\0" in double quotes is a character only after parsing.
+        bad = _BAD_CHARACTERS.search(getattr(event, "value", ""))
+        if bad:
+            self._refuse(event, f"control character U+{ord(bad[0]):04X} is not allowed")
         if depth > MOST_DEPTH:
             self._refuse(event, f"nested more than {MOST_DEPTH} deep")
 

@@ -1,14 +1,16 @@
 """What a check is worth: valid pass, valid fail, invalid, informative, or not done.
 
 A check speaks about the event only when the item, cord and outlet are the event's, nothing was
-repaired, cleaned, swapped or opened before, method and supply are accepted for that check, the state
-covers the event's, the instrument was in calibration, the unit undisputed, the value possible.
+repaired, cleaned, swapped or opened before, method and supply are accepted for that check, the
+state covers the event's, the instrument was in calibration, the unit undisputed, the value
+possible.
 """
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
-from triage.check_table import Accepts, CheckKind, check_kinds
+from triage.check_table import Accepts, CheckKind, LimitsFrom, check_kinds
+from triage.citation import Citation
 from triage.clock import before
 from triage.errors import InvalidValue
 from triage.incident import Check, Contact, Incident, Item
@@ -80,11 +82,11 @@ def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:
     judgements = _held_against_limits(check, kind, item, value, site)
     outcome = _outcome(check, kind, value, judgements)
     if outcome is None:
-        return CheckVerdict(
-            check, kind, "not_done", reasons=("no result and no value",), value=value
-        )
+        return CheckVerdict(check, kind, "not_done", reasons=_open(judgements), value=value)
     as_left = check.stage == "as_left"
     reasons = tuple(_reasons(check, kind, item, incident, site)) + ((problem,) if problem else ())
+    if not judgements and value is not None and _limits_from(check, kind) is not None:
+        reasons += ("no limit on file fits this item, method and state",)
     return CheckVerdict(
         check, kind, _state(kind, outcome, bool(reasons)), as_left, reasons, value,
         _deciding_limit(judgements), judgements,
@@ -98,6 +100,13 @@ def find_item(incident: Incident, item_id: str | None) -> Item | None:
 
 def _unknown_kind(check: Check) -> str:
     return f"'{check.kind or ''}' is not in the table of checks"
+
+
+def _open(judgements: tuple[Judgement, ...]) -> tuple[str, ...]:
+    """Why there is neither pass nor fail."""
+    if any(each.verdict == "undecided" for each in judgements):
+        return ("the reading leaves it open whether the limit is kept",)
+    return ("no result and no value",)
 
 
 def _state(kind: CheckKind, outcome: str, invalid: bool) -> str:
@@ -128,22 +137,61 @@ def _held_against_limits(
     check: Check, kind: CheckKind, item: Item | None, value: Quantity | None, site: Site
 ) -> tuple[Judgement, ...]:
     """The value against the edition in force; nothing where there is no value or no row."""
-    source = next((each for each in kind.limits_from if check.method in each.methods), None)
+    source = _limits_from(check, kind)
     if source is None or value is None or value.value < 0:
         return ()
     chosen = next((e.edition for e in site.file.editions if e.check == kind.id and e.edition), None)
-    rows = load_limits().find(
+    rows = _rows(check, item, source=source, edition=chosen, quantity=value.kind) or _rows(
+        check, item, source=source, edition=source.edition, quantity=value.kind
+    )
+    sign = value.text[0] if value.text[0] in "≤≥" else value.bound
+    return judge(value.value, sign, tuple(tightened(row, site) for row in rows))
+
+
+def _limits_from(check: Check, kind: CheckKind) -> LimitsFrom | None:
+    return next((each for each in kind.limits_from if check.method in each.methods), None)
+
+
+def _rows(
+    check: Check, item: Item | None, *, source: LimitsFrom, edition: str | None, quantity: str
+) -> tuple[Limit, ...]:
+    """Rows of one edition for a check; none for an edition that is not on file."""
+    if edition not in load_limits().editions:
+        return ()
+    return load_limits().find(
         check=source.check,
-        edition=chosen or source.edition,
+        edition=edition,
         condition=_condition(check),
         equipment_class=item.equipment_class
         if item and item.equipment_class != "internal"
         else None,
         part=item.applied_part if item and item.applied_part != "none" else None,
         method=source.method,
-        kind=kind.quantity,
+        kind=quantity,
     )
-    return judge(value.value, value.bound, rows)
+
+
+def tightened(limit: Limit, site: Site) -> Limit:
+    """A limit as the site file makes it stricter; the shipped one where it does not.
+
+    Args:
+        limit: a shipped row.
+        site: its `tightened` names limits by id; a looser or unreadable value changes nothing.
+    """
+    typed = next((each.value for each in site.file.tightened if each.limit == limit.id), None)
+    try:
+        value = parse(typed or "", limit.kind)
+    except InvalidValue:
+        return limit
+    if value.bound or not is_stricter(value.value, limit):
+        return limit
+    cited = Citation(f"site file, stricter than {limit.text} of {limit.edition.text()}")
+    return replace(limit, value=value.value, text=value.text, citation=cited, disputed=False)
+
+
+def is_stricter(value: float, limit: Limit) -> bool:
+    """Whether a value in SI, above 0, leaves less room than a shipped limit."""
+    return 0 < value < limit.value if limit.sense == "max" else value > limit.value
 
 
 def _condition(check: Check) -> str | None:
@@ -181,6 +229,8 @@ def _reasons(
     """Every reason why the check does not count."""
     if item is None:
         yield "it does not say which item was checked"
+    elif item.kind not in (None, *kind.applies_to) and kind.counts_as_pass != "any_valid_value":
+        yield f"it is not a check of this kind of item: {(item.kind or '').replace('_', ' ')}"
     accepted = next((each for each in kind.accepts if each.method == check.method), None)
     yield from _method_reasons(check, kind, accepted)
     if check.method == "no_protective_earth" and (item is None or item.equipment_class != "II"):
@@ -191,6 +241,7 @@ def _reasons(
         yield "the unit is in doubt"
     if kind.quantity and kind.id not in _NO_INSTRUMENT:
         yield from _calibration_reasons(check, site)
+    yield from _time_reasons(check, incident, site)
     if check.stage == "as_left":
         return
     yield from _set_reasons(check, item)
@@ -224,6 +275,15 @@ def _calibration_reasons(check: Check, site: Site) -> Iterator[str]:
         yield "the instrument was past its calibration, or the time is not known"
 
 
+def _time_reasons(check: Check, incident: Incident, site: Site) -> Iterator[str]:
+    """A check made before the event says nothing about it, and not knowing counts the same."""
+    later = before(incident.event.at, check.at, site.zone)
+    if later is None:
+        yield "it is not known to have been made after the event; give both times closely enough"
+    elif not later:
+        yield "it was made before the event"
+
+
 def _set_reasons(check: Check, item: Item | None) -> Iterator[str]:
     """Cord and outlet must be the event's, wherever the item has them."""
     if item is None:
@@ -233,7 +293,7 @@ def _set_reasons(check: Check, item: Item | None) -> Iterator[str]:
     if check.outlet is not None and item.outlet is not None and check.outlet != item.outlet:
         yield "another outlet was used"
     has_cord = item.kind in MAINS_KINDS or item.kind is None or item.power in MAINS_POWER
-    named = check.cord is not None and check.cord == item.cord
+    named = check.cord is not None and (check.cord, check.outlet) == (item.cord, item.outlet)
     if check.same_cord == "no":
         yield "not the cord and outlet of the event"
     elif has_cord and check.same_cord is None and not named:
@@ -248,15 +308,13 @@ def _disturbance_reasons(
     changed = DESTROYING & set(check.disturbed)
     if changed:
         yield f"made after: {_listed(changed)}"
-    elif check.stage == "after_disturbance" and not check.disturbed:
+    elif check.stage == "after_disturbance" and not set(check.disturbed) - {"none"}:
         yield "made after a disturbance that is not named"
     if item is not None and {"altered", "missing"} & set(item.condition):
         yield "the item was changed since the event"
     earlier = DESTROYING & set(incident.scene.changes)
     if earlier and before(check.at, incident.scene.changed_at, site.zone) is not True:
         yield f"the scene was changed before it: {_listed(earlier)}"
-    if before(check.at, incident.event.at, site.zone) is True:
-        yield "it was made before the event"
 
 
 def _item_state_reasons(

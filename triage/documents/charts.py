@@ -40,6 +40,10 @@ from triage.documents.svg import (
 )
 
 
+LABELS = 196.0
+"""Points; the column of row labels, at the left of a chart of rows."""
+
+
 class CauseRange(NamedTuple):
     """One row of `cause_ranges`: probabilities 0 to 1, and whether the cause is a mains fault."""
 
@@ -107,11 +111,11 @@ def cause_ranges(rows: Sequence[CauseRange], *, alt: str) -> str:
         SVG text. Faults have a thick bar and a filled square, others a thin bar and a ring.
     """
     bottom = 12 + 15.0 * len(rows)
-    axis = Axis(176, WIDTH - 12, (0.005, 0.97), _log_odds)
+    axis = Axis(LABELS, WIDTH - 12, (0.005, 0.97), _log_odds)
     parts = [ticks_across(axis, (0.01, 0.05, 0.2, 0.5, 0.8, 0.95), (6, bottom), _percent)]
     for number, row in enumerate(rows):
         y = 14 + 15.0 * number
-        parts += [text(0, y + 2.5, fit(row.label, 168)), _range(axis, y, row)]
+        parts += [text(0, y + 2.5, fit(row.label, LABELS - 10)), _range(axis, y, row)]
     parts += _cause_key(bottom + 25)
     return figure(bottom + 30, alt, parts)
 
@@ -159,18 +163,18 @@ def weights(rows: Sequence[tuple[str, float]], *, sides: tuple[str, str], alt: s
         SVG text; bars to the right are solid, to the left hatched; each bears its weight.
     """
     reach = max([10.0, *(abs(weight) for _, weight in rows)])
-    axis = Axis(210, WIDTH - 34, (-reach, reach), float)
+    axis = Axis(LABELS + 24, WIDTH - 34, (-reach, reach), float)
     middle, bottom = axis.at(0), 18 + 14.0 * len(rows)
     parts = [
-        text(middle - 6, 8, f"← {fit(sides[0], 120)}", anchor="end"),
-        text(middle + 6, 8, f"{fit(sides[1], 120)} →"),
+        text(middle - 6, 8, f"← {fit(sides[0], 300)}", anchor="end"),
+        text(middle + 6, 8, f"{fit(sides[1], 135)} →"),
         line(middle, 13, middle, bottom),
     ]
     for number, (label, weight) in enumerate(rows):
         y, x = 18 + 14.0 * number, axis.at(weight)
         bar = box(middle, y, x, y + 8) if weight >= 0 else hatch(x, y, middle, y + 8)
         beside = (x + 3, "start") if weight >= 0 else (x - 3, "end")
-        parts += [bar, text(0, y + 6.5, fit(label, 168))]
+        parts += [bar, text(0, y + 6.5, fit(label, LABELS - 10))]
         parts.append(text(beside[0], y + 6.5, _signed(weight), anchor=beside[1]))
     return figure(bottom + 3, alt, parts)
 
@@ -230,13 +234,13 @@ def charge_energy(scales: Sequence[Scale], *, alt: str) -> str:
     for scale in scales:
         bottom = top + 18 + 14.0 * len(scale.rows)
         reach = decades([x for row in scale.rows for x in (row.low, row.high)])
-        axis = Axis(176, WIDTH - 14, reach, math.log10)
+        axis = Axis(LABELS, WIDTH - 14, reach, math.log10)
         parts.append(text(0, top + 8, scale.name, bold=True))
         word = partial(with_prefix, unit=scale.unit)
         parts.append(ticks_across(axis, powers(reach), (top + 12, bottom), word))
         for number, row in enumerate(scale.rows):
             y = top + 20 + 14.0 * number
-            parts += [text(0, y + 2.5, fit(row.label, 168)), _scale_row(axis, y, row)]
+            parts += [text(0, y + 2.5, fit(row.label, LABELS - 10)), _scale_row(axis, y, row)]
         top = bottom + 22
     return figure(top - 6, alt, parts)
 
@@ -256,13 +260,14 @@ def _range(axis: Axis, y: float, row: CauseRange) -> str:
 
 
 def _cause_key(y: float) -> list[str]:
+    left, right = LABELS, LABELS + 100
     return [
-        line(176, y - 2.5, 196, y - 2.5, width=2.6),
-        square(186, y - 2.5),
-        text(202, y, "electrical fault"),
-        line(276, y - 2.5, 296, y - 2.5, width=0.9),
-        ring(286, y - 2.5),
-        text(302, y, "other cause"),
+        line(left, y - 2.5, left + 20, y - 2.5, width=2.6),
+        square(left + 10, y - 2.5),
+        text(left + 26, y, "electrical fault"),
+        line(right, y - 2.5, right + 20, y - 2.5, width=0.9),
+        ring(right + 10, y - 2.5),
+        text(right + 26, y, "other cause"),
     ]
 
 

@@ -17,7 +17,7 @@ WIDTH = 476.0
 SIZE = 7.0
 """Points; size of lettering."""
 
-EM = 0.53
+EM = 0.51
 """Mean width of a letter of the carried face, in its size; rounded up from English text."""
 
 INK, GREY, RULE, TINT = "#000", "#6e6e6e", "#c8c8c8", "#e6e6e6"

@@ -112,21 +112,6 @@ def standing_person(
     return FREE_PERSON + feet * plates(SOLE_AREA, thickness, relative_permittivity)
 
 
-def series(first: float, second: float) -> float:
-    """Capacitance of two in series, or of one floating body seen from another [F].
-
-    >>> round(series(130e-12, 80e-12) * 1e12, 1)
-    49.5
-    """
-    first, second = _positive("capacitance", first), _positive("capacitance", second)
-    return first * second / (first + second)
-
-
-def from_decay(time_constant: float, resistance: float) -> float:
-    """Capacitance from a measured decay and the resistance it leaked through [F], tau / R."""
-    return _positive("time constant", time_constant) / _positive("resistance", resistance)
-
-
 def _positive(name: str, value: float) -> float:
     if not value > 0:
         raise InvalidValue(f"{name} must be above 0, got {value!r}")

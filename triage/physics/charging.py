@@ -1,4 +1,4 @@
-"""How people and objects charge: walking and rolling, quick acts, induction, and the leak.
+"""How people and objects charge: walking and rolling, quick acts, and the leak to earth.
 
 A moving contact is a current source with an internal resistance: on a good earth path the voltage
 is current times resistance, on an insulating one it ends at the open-circuit voltage of the
@@ -147,6 +147,13 @@ class Charged:
         return product("C", self.capacitance, self.voltage)
 
     @property
+    def time_constant(self) -> Estimate | None:
+        """R C, in which the voltage falls to 37 % [s]; None if the resistance is not known."""
+        if self.resistance is None:
+            return None
+        return product("s", self.resistance, self.capacitance)
+
+    @property
     def energy(self) -> Estimate:
         """C V^2 / 2 [J]."""
         return product("J", self.charge, self.voltage).scaled(0.5)
@@ -164,7 +171,7 @@ def in_series(*resistances: Estimate, order: int = 6) -> Estimate:
         raise InvalidValue(f"one or two resistances in series, got {len(resistances)}")
     first, second = resistances
     ratio = second.over(first, "")
-    return product("ohm", first, through(_softplus, ratio, unit="", order=order))
+    return product("ohm", first, through(softplus, ratio, unit="", order=order))
 
 
 def moving(
@@ -199,12 +206,12 @@ def moving(
 
     def log_shape(u: float, *rest: float) -> float:
         """Ln of V over open-circuit voltage, from ln(I R / V_oc), ln(R C), ln(contact / V_oc)."""
-        more = _softplus(u)
+        more = softplus(u)
         value = u - more
         if seconds is not None:
             value += log(-expm1(-seconds * exp(min(more - rest[0], 40.0))))
         if mover.contact:
-            value += _softplus(rest[-1] - value)
+            value += softplus(rest[-1] - value)
         if pause > 0:
             value -= min(pause * exp(-rest[0]), NOTHING)
         return value
@@ -232,7 +239,7 @@ def quick_act(
     """
     free = product("V", charge, capacitance.power(-1, "1/F"))
     limit = log(corona_limit)
-    held = through(lambda v: -_softplus(v - limit), free, unit="", order=24)
+    held = through(lambda v: -softplus(v - limit), free, unit="", order=24)
     return Charged(product("V", free, held, doubt), capacitance)
 
 
@@ -253,50 +260,6 @@ def leaking(body: Charged, *, resistance: Estimate, seconds: float) -> Charged:
     return Charged(product("V", body.voltage, left), body.capacitance, resistance)
 
 
-def induced_voltage(source_voltage: float, coupling: float, own: float) -> float:
-    """Voltage of a floating person beside a charged object, for instance behind a plastic handle.
-
-    Args:
-        source_voltage: of the object [V].
-        coupling: capacitance between the two [F], above 0.
-        own: capacitance of the person to earth [F], above 0.
-
-    Returns:
-        Voltage of the person to earth [V].
-
-    Source:
-        Capacitive divider, textbook electrostatics.
-
-    >>> round(induced_voltage(8000, 20e-12, 130e-12))
-    1067
-    """
-    if not (coupling > 0 and own > 0):
-        raise InvalidValue(f"capacitances must be above 0, got {coupling!r} and {own!r}")
-    return source_voltage * coupling / (coupling + own)
-
-
-def voltage_after_leaving(source_voltage: float, coupling: float, own: float) -> float:
-    """Voltage left on a person who touched earth beside a charged object and then walked away.
-
-    Args:
-        source_voltage: of the object while the person was earthed [V].
-        coupling: capacitance between the two at that time [F], 0 or more.
-        own: capacitance of the person to earth afterwards [F], above 0.
-
-    Returns:
-        Voltage of the person [V], of the opposite sign.
-
-    Source:
-        The charge -C V induced while earthed is trapped; textbook electrostatics.
-
-    >>> round(voltage_after_leaving(8000, 20e-12, 130e-12))
-    -1231
-    """
-    if not (coupling >= 0 and own > 0):
-        raise InvalidValue(f"capacitances must be above 0, got {coupling!r} and {own!r}")
-    return -source_voltage * coupling / own
-
-
-def _softplus(x: float) -> float:
+def softplus(x: float) -> float:
     """Ln(1 + e^x) without overflow."""
     return x + log1p(exp(-x)) if x > 0 else log1p(exp(x))

@@ -1,11 +1,11 @@
 """A discharge: charge, energy, what remains, peak current, and the test-bench equivalents."""
 
 from dataclasses import dataclass
-from math import atan2, atanh, exp, log1p, sin, sqrt
+from math import atan2, atanh, exp, sin, sqrt
 
 from triage.errors import InvalidValue
 from triage.estimate import Estimate, product, through
-from triage.physics.charging import Charged
+from triage.physics.charging import Charged, softplus
 
 SPARK_RESISTANCE = 30.0
 """[ohm] left in the arc when the current peaks; fitted to simulated sparks, judgement."""
@@ -82,7 +82,7 @@ def between(c1: float, v1: float, *, c2: float, v2: float) -> TwoBodies:
 def in_series(c1: Estimate, c2: Estimate) -> Estimate:
     """Capacitance that two floating bodies share, C1 C2 / (C1 + C2) [F]."""
     ratio = c1.over(c2, "")
-    return product("F", c1, through(lambda r: -_log1pexp(r), ratio, unit="", order=10))
+    return product("F", c1, through(lambda r: -softplus(r), ratio, unit="", order=10))
 
 
 @dataclass(frozen=True, slots=True)
@@ -114,7 +114,7 @@ def to_floating(body: Charged, other: Estimate) -> Spark:
     """
     passed = product("C", body.voltage, in_series(body.capacitance, other))
     ratio = other.over(body.capacitance, "")
-    kept = through(lambda r: -_log1pexp(r), ratio, unit="", order=10)
+    kept = through(lambda r: -softplus(r), ratio, unit="", order=10)
     energy = product("J", passed, body.voltage).scaled(0.5)
     return Spark(passed, energy, product("V", body.voltage, kept))
 
@@ -207,9 +207,9 @@ class Circuit:
         return self.current(voltage, self.peak_time())
 
 
-HUMAN_BODY = Circuit(100e-12, SKIN_PATH, 7.5e-6)
-"""Human-body model of ANSI/ESDA/JEDEC JS-001, 100 pF through 1500 ohm; the inductance, which sets
-the rise time within 2 to 10 ns, from memory."""
+HUMAN_BODY = Circuit(100e-12, SKIN_PATH, 5e-6)
+"""Human-body model of ANSI/ESDA/JEDEC JS-001, 100 pF through 1500 ohm; the inductance is a
+judgement that keeps peak and rise time (2 to 10 ns) within the limits for a short circuit."""
 
 GENERATOR = Circuit(150e-12, METAL_PATH, 0.1e-6)
 """Slow part of the IEC 61000-4-2 generator, 150 pF through 330 ohm; inductance a judgement. Its
@@ -238,7 +238,3 @@ def _positive(name: str, value: float) -> float:
     if not value > 0:
         raise InvalidValue(f"{name} must be above 0, got {value!r}")
     return value
-
-
-def _log1pexp(x: float) -> float:
-    return x + log1p(exp(-x)) if x > 0 else log1p(exp(x))

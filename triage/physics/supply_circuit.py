@@ -10,7 +10,7 @@ from math import pi
 
 from triage.errors import InvalidValue
 from triage.physics.nodal import EARTH, Emf, Solution, Tie, solve
-from triage.physics.touch_current import Mains, Source, Spark, contact_spark, shunt
+from triage.physics.touch_current import Mains, Source, Spark, contact_spark
 
 CONDUCTOR = 0.1
 """Judgement: resistance of an intact neutral or earth conductor when not measured [ohm]."""
@@ -21,12 +21,21 @@ class Leak:
     """A resistance beside a capacitance between two points.
 
     Args:
-        resistance: R [ohm]; None for no resistive path.
-        capacitance: C [F].
+        resistance: R [ohm], above 0; None for no resistive path.
+        capacitance: C [F], 0 or more.
     """
 
     resistance: float | None = None
     capacitance: float = 0.0
+
+    def __post_init__(self) -> None:
+        """Refuse what no leak is.
+
+        Raises:
+            InvalidValue: R not above 0, or C negative.
+        """
+        if not self.capacitance >= 0 or not (self.resistance is None or self.resistance > 0):
+            raise InvalidValue(f"no leak is {self.resistance!r} ohm beside {self.capacitance!r} F")
 
 
 @dataclass(frozen=True, slots=True)
@@ -64,10 +73,13 @@ class Supply:
         """Refuse what no supply is.
 
         Raises:
-            InvalidValue: other than one or three phases, or more leaks than lines.
+            InvalidValue: other than one or three phases, more leaks than lines, or a neutral of
+                no resistance.
         """
         if self.phases not in (1, 3) or len(self.leaks) > len(self.lines):
             raise InvalidValue("a supply has 1 or 3 phases and at most one leak a line")
+        if self.neutral is not None and not self.neutral > 0:
+            raise InvalidValue(f"no neutral conductor has {self.neutral!r} ohm")
 
     @property
     def lines(self) -> tuple[str, ...]:
@@ -93,6 +105,16 @@ class Device:
     earth: float | None = CONDUCTOR
     earth_to: str = EARTH
     load: float | None = None
+
+    def __post_init__(self) -> None:
+        """Refuse resistances no device has.
+
+        Raises:
+            InvalidValue: an earth or load resistance not above 0.
+        """
+        for each in (self.earth, self.load):
+            if each is not None and not each > 0:
+                raise InvalidValue(f"{self.name}: no conductor has {each!r} ohm")
 
 
 @dataclass(frozen=True, slots=True)
@@ -120,6 +142,16 @@ class Room:
     supply: Supply
     devices: tuple[Device, ...] = ()
     links: tuple[Link, ...] = ()
+
+    def __post_init__(self) -> None:
+        """Refuse two things at one node.
+
+        Raises:
+            InvalidValue: two devices of one name, or one named like a line or earth.
+        """
+        names = [each.name for each in self.devices]
+        if len({*names, *self.supply.lines, EARTH}) < len(names) + len(self.supply.lines) + 1:
+            raise InvalidValue(f"devices need names of their own: {', '.join(names)}")
 
 
 @dataclass(frozen=True, slots=True)
@@ -273,29 +305,28 @@ def _insulation(room: Room) -> float:
 
 def _network(room: Room, *, direct: bool = False) -> tuple[list[Tie], list[Emf]]:
     """Admittances and sources; `direct` leaves every capacitance out."""
-    ties = [(a, b, _admittance(leak, room.supply.mains, direct)) for a, b, leak in _leaks(room)]
+    angular = 0.0 if direct else room.supply.mains.angular
+    ties = [
+        (a, b, complex(0.0 if r is None else 1 / r, angular * c)) for a, b, r, c in _leaks(room)
+    ]
     return ties, _emfs(room.supply)
 
 
-def _admittance(leak: Leak, mains: Mains, direct: bool) -> complex:
-    return shunt(leak.resistance, 0.0 if direct else leak.capacitance, mains)
-
-
-def _leaks(room: Room) -> Iterator[tuple[str, str, Leak]]:
-    supply = room.supply
-    for line, leak in zip(supply.lines, supply.leaks, strict=False):
-        yield line, EARTH, leak
+def _leaks(room: Room) -> Iterator[tuple[str, str, float | None, float]]:
+    supply, lines = room.supply, room.supply.lines
+    for line, leak in zip(lines, supply.leaks, strict=False):
+        yield line, EARTH, leak.resistance, leak.capacitance
     if not supply.isolated and supply.neutral is not None:
-        yield "N", EARTH, Leak(supply.neutral)
+        yield "N", EARTH, supply.neutral, 0.0
     for device in room.devices:
-        for line, leak in zip(supply.lines, device.filters, strict=False):
-            yield line, device.name, leak
+        for line, leak in zip(lines, device.filters, strict=False):
+            yield line, device.name, leak.resistance, leak.capacitance
         if device.earth is not None:
-            yield device.name, device.earth_to, Leak(device.earth)
+            yield device.name, device.earth_to, device.earth, 0.0
         if device.load is not None:
-            yield supply.lines[0], supply.lines[1], Leak(device.load)
+            yield lines[0], lines[1], device.load, 0.0
     for link in room.links:
-        yield link.first, link.second, link.leak
+        yield link.first, link.second, link.leak.resistance, link.leak.capacitance
 
 
 def _emfs(supply: Supply) -> list[Emf]:

@@ -1,0 +1,250 @@
+"""The incident report: one document for the risk office, facts and analysis apart."""
+
+import os
+import tempfile
+from pathlib import Path
+from typing import Any
+
+from triage.assessment import Assessment
+from triage.documents.analysis import analysis_sections
+from triage.documents.as_data import as_data
+from triage.documents.facts import facts_sections
+from triage.documents.sources import source_lines
+from triage.documents.summary import Summary, summarise
+from triage.errors import CannotWrite
+from triage.render import Attachment, render_html, render_pdf
+
+_MOST = {"causes": 4, "estimates": 4, "unknown": 3, "checks": 4, "cautions": 3, "quotes": 2}
+"""Longest lists on page one, so that it stays one page; the rest follows in the other parts."""
+_QUOTE = 120
+
+
+def context(a: Assessment, *, page_one_only: bool = False) -> dict[str, Any]:
+    """Everything the template may name, worded and rounded.
+
+    Args:
+        a: the assessment.
+        page_one_only: leave the other parts out.
+    """
+    s = summarise(a)
+    file = a.site.file
+    state = "final" if a.incident.outcome.confirmed_cause else "preliminary"
+    parts = [] if page_one_only else _parts(a, s)
+    return {
+        "language": file.language or "en",
+        "paper": file.paper or "A4",
+        "title": f"Incident report {a.record.case}, issue 1, {state}",
+        "draft": False,
+        "running": {
+            "issue": f"Incident {a.record.case} · issue 1 · {state}",
+            "digest": f"record {a.record.digest[:12]} · knowledge {a.knowledge[:8]} · "
+            f"program {a.version}",
+            "page": "Page",
+            "of": "of",
+        },
+        "heading": {"name": "Incident report", "lines": _heading(a)},
+        "page_one": _page_one(a, s),
+        "parts": parts,
+    }
+
+
+def _heading(a: Assessment) -> list[str]:
+    incident, facility = a.incident, a.site.file.facility
+    place = incident.place.room_name or incident.place.room or "place not known"
+    when = incident.event.at.text if incident.event.at else "time not known"
+    by = incident.recorded_by or "role not recorded"
+    at = f", {incident.recorded_at.text}" if incident.recorded_at else ""
+    where = f"{facility} · {place}" if facility else place
+    return [f"{where} · event {when}", f"Recorded by {by}{at}"]
+
+
+def _page_one(a: Assessment, s: Summary) -> dict[str, Any]:
+    return {
+        "marking": a.site.file.wording.analysis_marking or "",
+        "person": _person(s),
+        "equipment": {
+            "condition": s.condition,
+            "headline": s.headline,
+            "rows": [
+                {"item": i.item, "defect": i.defect, "severity": i.severity,
+                 "disposition": i.disposition}
+                for i in s.items
+            ],
+            "room": s.room,
+        },
+        "happened": {"summary": s.happened, "quotes": _quotes(s)},
+        "causes": {
+            "summary": s.causes_lead,
+            "rows": [[c.cause, c.words, c.range] for c in s.causes[: _MOST["causes"]]],
+            "note": s.causes_note,
+        },
+        "estimates": [
+            [e.quantity, e.middle, e.range or "—", e.rests_on]
+            for e in s.estimates[: _MOST["estimates"]]
+        ],
+        "not_known": _shortened(s.unknown, _MOST["unknown"]) or ["Nothing that would matter."],
+        "next_checks": _first_checks(s) or [{"who": "Nobody", "checks": ["None is open."]}],
+        "cautions": _cautions(a, s),
+    }  # fmt: skip
+
+
+def _person(s: Summary) -> list[str]:
+    """The lead, the two most urgent actions together, and the state of the review."""
+    return [s.person[0], " ".join(s.person[1:3]), " ".join(s.reviews)]
+
+
+def _quotes(s: Summary) -> list[dict[str, str]]:
+    found: list[dict[str, str]] = []
+    for each in s.statements:
+        if each.words and len(found) < _MOST["quotes"]:
+            text = each.words
+            if len(text) > _QUOTE:
+                text = text[: _QUOTE - 2].rsplit(" ", 1)[0] + " …"
+            heading = f"{each.by or 'Witness'} ({each.id})"
+            found.append({"heading": heading, "text": text, "language": each.language or "en"})
+    return found
+
+
+def _shortened(lines: tuple[str, ...], most: int) -> list[str]:
+    if len(lines) <= most:
+        return list(lines)
+    rest = len(lines) - most + 1
+    return [*lines[: most - 1], f"{rest} more; see the analysis"]
+
+
+def _first_checks(s: Summary) -> list[dict[str, Any]]:
+    """The first checks overall, still grouped by who may do them."""
+    groups, left = [], _MOST["checks"]
+    for who, lines in s.next_checks:
+        taken = lines[: min(left, 3)]
+        left -= len(taken)
+        if taken:
+            groups.append({"who": who, "checks": list(taken)})
+    return groups
+
+
+def _cautions(a: Assessment, s: Summary) -> list[str]:
+    """The cautions of this outcome before the general ones, which stand in full later."""
+    own = [c.text for c in a.cautions if c.when != "always"]
+    general = [c.text for c in a.cautions if c.when == "always"]
+    return [*own, *general][: _MOST["cautions"]]
+
+
+def _parts(a: Assessment, s: Summary) -> list[dict[str, Any]]:
+    wording = a.site.file.wording
+    return [
+        {"title": "Facts", "marking": wording.facts_marking or "", "sections": facts_sections(a)},
+        {"title": "Analysis", "marking": wording.analysis_marking or "",
+         "sections": analysis_sections(a)},
+        {"title": "Cautions, signatures, sources", "marking": wording.analysis_marking or "",
+         "sections": _closing(a, s)},
+    ]  # fmt: skip
+
+
+def _closing(a: Assessment, s: Summary) -> list[dict[str, Any]]:
+    sections = [
+        {"title": "Not known", "wide": False,
+         "blocks": [{"kind": "list", "lines": list(s.unknown) or ["Nothing that would matter."]}]},
+        {"title": "Cautions", "wide": False,
+         "blocks": [{"kind": "list", "lines": list(s.cautions)}]},
+        {"title": "Signatures", "wide": True,
+         "blocks": [{"kind": "signatures", "columns": _SIGNATURE_COLUMNS, "rows": _SIGNATURE_ROWS}]},
+        {"title": "Sources of the numbers", "wide": True,
+         "blocks": [{"kind": "text", "class": "note", "text": _SOURCES_NOTE},
+                    {"kind": "sources", "lines": list(source_lines(a))}]},
+        {"title": "Departures and versions", "wide": False,
+         "blocks": [{"kind": "list", "lines": list(_departures(a))}]},
+    ]  # fmt: skip
+    if s.questions:
+        sections.insert(0, {"title": "Please confirm", "wide": False,
+                            "blocks": [{"kind": "list", "lines": list(s.questions)}]})  # fmt: skip
+    return sections
+
+
+_SIGNATURE_COLUMNS = [
+    {"name": "Part", "width": 16}, {"name": "Role", "width": 34},
+    {"name": "Signature", "width": 32}, {"name": "Date", "width": 18},
+]  # fmt: skip
+_SIGNATURE_ROWS = [[part, "", "", ""] for part in ("Author", "Reviewer", "Approver")]
+_SOURCES_NOTE = (
+    "Published: the source was read. Memory: recalled, verify against the edition in force. "
+    "Judgement: a choice of this program with its reason. Local codes, the maker's instructions "
+    "and licensed practice take precedence."
+)
+
+
+def _departures(a: Assessment) -> list[str]:
+    file = a.site.file
+    lines = [
+        f"Edition in force for {e.check.replace('_', ' ')}: {e.edition}" for e in file.editions
+    ]
+    lines += [f"Limit {t.limit} tightened to {t.value}" for t in file.tightened]
+    lines += [f"{r.cause.replace('_', ' ')} made {r.times} times as probable: {r.reason or 'no reason'}"
+              for r in file.policy.raised]  # fmt: skip
+    if file.policy.miss_ratio:
+        lines.append(f"A missed fault weighs as {file.policy.miss_ratio} needless holds")
+    for approval in file.approvals:
+        when = approval.at.text if approval.at else "date not recorded"
+        lines.append(f"Site file approved by {approval.role or 'role not recorded'}, {when}")
+    if not lines:
+        lines.append("Shipped values throughout; no site file departs from them")
+    lines.append(f"Record {a.record.digest}")
+    lines.append(f"Site file {a.site.digest}")
+    lines.append(f"Knowledge {a.knowledge}; program {a.version}; schema {a.schema}")
+    return lines
+
+
+def write_report(a: Assessment, target: Path, *, page_one_only: bool = False) -> tuple[str, ...]:
+    """Write the report as one PDF with the record and the assessment inside.
+
+    Args:
+        a: the assessment.
+        target: the file to write; it appears whole or not at all.
+        page_one_only: page one alone.
+
+    Returns:
+        Notes for the person who asked, such as characters printed as codes.
+
+    Raises:
+        CannotWrite: the place cannot be written.
+        MissingLibrary: a system library for rendering is absent.
+    """
+    import json
+
+    from triage.canonical import canonical
+
+    made = context(a, page_one_only=page_one_only)
+    data = json.dumps(as_data(a), ensure_ascii=False, indent=1, sort_keys=True).encode()
+    attached = [
+        Attachment("record.json", canonical(a.record.tree), "The record in canonical form"),
+        Attachment("assessment.json", data, "The assessment as data"),
+    ]
+    pdf = render_pdf(
+        render_html("incident_report.html", made), title=made["title"], attachments=attached,
+        identifier=bytes.fromhex(a.record.digest)[:16],
+    )  # fmt: skip
+    _write(target, pdf.content)
+    if pdf.missing_glyphs:
+        count = len(pdf.missing_glyphs)
+        return (f"{count} characters have no glyph here and are printed as codes",)
+    return ()
+
+
+def _write(target: Path, content: bytes) -> None:
+    """Write a file so that it is there whole or not at all."""
+    try:
+        target.parent.mkdir(parents=True, exist_ok=True)
+        handle, name = tempfile.mkstemp(dir=target.parent, prefix=".", suffix=".part")
+        try:
+            with os.fdopen(handle, "wb") as file:
+                file.write(content)
+                file.flush()
+                os.fsync(file.fileno())
+            os.chmod(name, 0o644)
+            os.replace(name, target)
+        except BaseException:
+            Path(name).unlink(missing_ok=True)
+            raise
+    except OSError as error:
+        reason = error.strerror or "cannot be written"
+        raise CannotWrite(f"{target}: {reason}; name another place with -o") from None

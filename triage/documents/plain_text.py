@@ -1,0 +1,96 @@
+"""The assessment as plain text for a terminal: one fact a line, nothing by colour alone."""
+
+from collections.abc import Iterator
+from textwrap import wrap
+
+from triage.assessment import Assessment
+from triage.documents.sources import source_lines
+from triage.documents.summary import Summary, summarise
+from triage.documents.wording import LEVEL_NAME
+from triage.knowledge import knowledge
+
+WIDTH = 78
+
+
+def plain_text(a: Assessment, *, why: bool = False) -> str:
+    """The whole assessment in the order it is read.
+
+    Args:
+        a: the assessment.
+        why: add each weight, each flag and each number with its citation.
+    """
+    s = summarise(a)
+    lines = [f"Incident {a.record.case}", *_wrapped(s.happened), ""]
+    for title, body in _sections(a, s):
+        lines += [title, *body, ""]
+    if why:
+        lines += [line for title, body in _why(a) for line in (title, *body, "")]
+    return "\n".join(lines).rstrip() + "\n"
+
+
+def _sections(a: Assessment, s: Summary) -> Iterator[tuple[str, list[str]]]:
+    yield "PERSON", _items((*s.person, *s.reviews))
+    yield "DISPOSITION", _dispositions(s)
+    yield "DEFECTS FOUND", _items(s.defects or ("None by the checks done.",))
+    causes = [f"{c.cause}: {c.words}; {c.range}" for c in s.causes]
+    yield "RANKED CAUSES OF THE SENSATION", [
+        *_wrapped(s.causes_lead), *_numbered(causes), *_wrapped(s.causes_note),
+    ]  # fmt: skip
+    rows = [
+        f"{e.quantity}: {e.middle}{f', {e.range}' if e.range else ''} ({e.rests_on})"
+        for e in s.estimates
+    ]
+    yield "ESTIMATES (middle, 9 in 10)", _items(rows)
+    yield "NOT KNOWN", _items(s.unknown or ("Nothing that would matter.",))
+    if s.questions:
+        yield "PLEASE CONFIRM", _items(s.questions)
+    checks: list[str] = []
+    number = 1
+    for who, group in s.next_checks:
+        checks.append(f"  {who}:")
+        checks += _numbered(group, number)
+        number += len(group)
+    yield "NEXT CHECKS", checks or ["  None."]
+    yield "CAUTIONS", _items(s.cautions)
+
+
+def _dispositions(s: Summary) -> list[str]:
+    lines = _wrapped(s.condition) + _wrapped(s.headline) if s.condition else _wrapped(s.headline)
+    for each in s.items:
+        lines += _items([f"{each.item}: {each.disposition} Because: {each.why}."])
+    return lines + _items([s.room])
+
+
+def _why(a: Assessment) -> Iterator[tuple[str, list[str]]]:
+    k = knowledge()
+    first, second = (k.causes[c].name for c in a.posterior.pair)
+    rows = [f"{weight.decibans:+6.1f}  {weight.label}" for weight in a.posterior.weights]
+    rows.append(f"{sum(weight.decibans for weight in a.posterior.weights):+6.1f}  odds of the pair")
+    yield f"WEIGHTS in decibans: {first} (+) against {second} (-)", [f"  {r}" for r in rows]
+    flags = [
+        f"{f.flag.name}: {'cleared' if f.cleared else 'stands'} ({f.because}); {f.missing}"
+        for f in a.flags
+    ]
+    yield "RED FLAGS", _items(flags or ["None."])
+    gate = ["open"] if a.gate.open else [f"shut: {each}" for each in a.gate.shut_by]
+    yield f"GATE TO {LEVEL_NAME[type(a.headline)(1)].upper()}", _items(gate)
+    yield "THE CONCLUSION HANGS ON", _items(a.sensitivity.hangs_on)
+    yield "NUMBERS AND THEIR SOURCES", _items(source_lines(a))
+
+
+def _wrapped(text: str) -> list[str]:
+    return wrap(text.replace("\u00a0", " "), WIDTH, initial_indent="  ", subsequent_indent="  ")
+
+
+def _items(lines: tuple[str, ...] | list[str]) -> list[str]:
+    return [out for line in lines for out in _hung("- ", line)]
+
+
+def _numbered(lines: tuple[str, ...] | list[str], start: int = 1) -> list[str]:
+    return [out for n, line in enumerate(lines, start) for out in _hung(f"{n}. ", line)]
+
+
+def _hung(mark: str, line: str) -> list[str]:
+    indent = "  " + " " * len(mark)
+    text = line.replace("\u00a0", " ")
+    return wrap(text, WIDTH, initial_indent=f"  {mark}", subsequent_indent=indent)

@@ -1,0 +1,82 @@
+"""Where every printed number comes from, as plain lines: what, source, place, how known."""
+
+from collections.abc import Iterator
+
+from triage.assessment import Assessment
+from triage.citation import Citation
+from triage.documents.summary import best_of
+from triage.knowledge import knowledge
+from triage.materials import load
+from triage.physics.figures import cited
+from triage.tables import citation, table
+
+_ALWAYS = ("sensation.felt", "walking.model_doubt", "bodies.standing.capacitance")
+_BY_CAUSE = {
+    "person_walking": ("walking.",),
+    "person_rising": ("acts.rise.", "walking.corona_limit"),
+    "charged_object": ("rolling.", "objects."),
+}
+_SOURCE_OF_CAUSE = {
+    "open_earth": "filter_capacitance_medical", "insulation_fault": "insulation_fault",
+    "moisture": "moisture_path", "earth_difference": "earth_difference",
+    "isolated_first_fault": "hazard_current",
+}  # fmt: skip
+
+
+def sources(a: Assessment) -> Iterator[tuple[str, Citation]]:
+    """Every number that the documents of this assessment can print, with its citation."""
+    k = knowledge()
+    yield "priors of causes, passes counted together, physics bounds", k.causes_citation
+    yield "likelihoods of findings, tempering, noise", k.findings_citation
+    yield "red flags", citation(table("red_flags"), "data/red_flags.yaml")
+    yield from _limits(a)
+    yield from _static(a)
+    yield from _mains(a)
+    for each in a.next_checks:
+        yield f"check: {each.kind.name.lower()}", each.kind.citation
+    for row in a.care.rows:
+        yield f"care: {row.id.replace('_', ' ')}", row.citation
+    for caution in a.cautions:
+        if caution.citation is not None:
+            yield f"caution: {caution.id.replace('_', ' ')}", caution.citation
+
+
+def _limits(a: Assessment) -> Iterator[tuple[str, Citation]]:
+    for verdict in a.verdicts:
+        for judgement in verdict.judgements:
+            for each in judgement.comparisons:
+                name = f"{each.limit.quantity.replace('_', ' ')} {each.limit.text}"
+                edition = each.limit.edition.text()
+                yield f"limit: {name}, {edition}", each.limit.citation
+
+
+def _static(a: Assessment) -> Iterator[tuple[str, Citation]]:
+    c, known = a.exposure.conditions, load().citations()
+    cause = best_of(a, "static")
+    wanted = [
+        f"floors.{c.floor or 'unknown'}.", f"footwear.{c.footwear or 'unknown'}.",
+        f"casters.{c.casters or 'unknown'}.", "humidity_response.",
+        *_ALWAYS, *_BY_CAUSE.get(cause or "", ()),
+    ]  # fmt: skip
+    for path, found in known.items():
+        if any(path.startswith(each) for each in wanted):
+            yield path.replace(".", " ").replace("_", " "), found
+
+
+def _mains(a: Assessment) -> Iterator[tuple[str, Citation]]:
+    yield "perception of current, light touch", cited("perception", "touch")
+    yield "perception of current, sensitive", cited("perception", "sensitive")
+    yield "hazard floor of the body", cited("body", "hazard_floor")
+    used = {_SOURCE_OF_CAUSE.get(best_of(a, "mains") or "")}
+    if not a.exposure.conditions.voltage_known:
+        used |= {"nominal_voltage", "nominal_frequency"}
+    if a.exposure.ceiling is not None:
+        used |= {"monitor_tolerance"}
+    for row in table("touch_sources")["sources"]:
+        if row["id"] in used:
+            yield row["name"], citation(row, row["id"])
+
+
+def source_lines(a: Assessment) -> tuple[str, ...]:
+    """The sources as lines, each once."""
+    return tuple(dict.fromkeys(f"{name}: {found.text()}" for name, found in sources(a)))

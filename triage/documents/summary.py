@@ -1,0 +1,299 @@
+"""The conclusions in the order they are read: person, items, defects, causes, estimates, next.
+
+One wording for page one, the terminal and every short form.
+"""
+
+from dataclasses import dataclass
+
+from triage.assessment import Assessment, named_conflicts
+from triage.check_table import PERFORMERS
+from triage.disposition import Level
+from triage.documents.wording import (
+    LEVEL_NAME,
+    NBSP,
+    amount,
+    amount_range,
+    condition,
+    item_name,
+    item_order,
+    likelihood,
+    meaning,
+    percent,
+    percent_range,
+    room_line,
+)
+from triage.incident import Statement
+from triage.knowledge import knowledge
+from triage.materials import load
+from triage.next_checks import NextCheck
+from triage.physics.sensation import after_noticing
+from triage.words import REVIEW
+
+PERFORMER_NAME = {
+    "any_staff": "Any staff",
+    "biomedical": "Biomedical engineering",
+    "licensed_electrician": "Licensed electrician",
+}
+_URGENCY_LEAD = {
+    "now": "The person comes first: medical assessment now.",
+    "same_day": "The person comes first: medical assessment today.",
+    "route": "The person comes first: the occupational-health route.",
+}
+METHOD_NOTE = (
+    "The likelihoods behind the ranking are judged; no measured frequencies stand behind them."
+)
+
+
+@dataclass(frozen=True, slots=True)
+class ItemLine:
+    """One item: name, defects found, severity 1 to 4, what happens to it, why."""
+
+    item: str
+    defect: str
+    severity: int
+    disposition: str
+    why: str
+
+
+@dataclass(frozen=True, slots=True)
+class CauseLine:
+    """One ranked cause: name, in words, range."""
+
+    cause: str
+    words: str
+    range: str
+
+
+@dataclass(frozen=True, slots=True)
+class EstimateLine:
+    """One estimate: what, middle, range, what it rests on."""
+
+    quantity: str
+    middle: str
+    range: str
+    rests_on: str
+
+
+@dataclass(frozen=True, slots=True)
+class Summary:
+    """Everything page one and the terminal print, worded and rounded."""
+
+    person: tuple[str, ...]
+    reviews: tuple[str, ...]
+    condition: str
+    headline: str
+    items: tuple[ItemLine, ...]
+    room: str
+    defects: tuple[str, ...]
+    happened: str
+    statements: tuple[Statement, ...]
+    causes_lead: str
+    causes: tuple[CauseLine, ...]
+    causes_note: str
+    estimates: tuple[EstimateLine, ...]
+    unknown: tuple[str, ...]
+    next_checks: tuple[tuple[str, tuple[str, ...]], ...]
+    cautions: tuple[str, ...]
+    questions: tuple[str, ...]
+
+
+def summarise(a: Assessment) -> Summary:
+    """Word one assessment."""
+    return Summary(
+        person_lines(a), review_lines(a), condition(a.incident), headline(a), item_lines(a), room_line(a),
+        tuple(f"{item_name(a.incident, d.item)}: {d.text}" for d in a.evidence.defects),
+        _happened(a), a.incident.statements, causes_lead(a), cause_lines(a), causes_note(a),
+        estimate_lines(a), a.unknown, checks_by_performer(a),
+        tuple(c.text for c in a.cautions), a.record.questions,
+    )  # fmt: skip
+
+
+def person_lines(a: Assessment) -> tuple[str, ...]:
+    """The lead, then each action."""
+    lead = _URGENCY_LEAD[a.care.urgency]
+    if any(r.when == "skin_or_glove_breach" for r in a.care.rows):
+        lead = "The person comes first: blood-exposure route now."
+    fire = "Vapour or oxygen within reach of the spark: a fire matter, whatever the cause."
+    lines = [lead, *([fire] if a.care.ignition else [])]
+    return (*lines, *(row.action for row in a.care.rows))
+
+
+def review_lines(a: Assessment) -> tuple[str, ...]:
+    """Where the medical review of each person stands."""
+    persons = a.incident.persons
+    if not persons:
+        return ("Nobody is on record as affected; ask who was.",)
+    return tuple(
+        f"{(p.role or p.who or p.id).capitalize()}: {meaning(REVIEW, p.review)}." for p in persons
+    )
+
+
+def headline(a: Assessment) -> str:
+    """The most severe disposition in a sentence."""
+    level = a.headline
+    named = [item_name(a.incident, i.item) for i in a.items if i.level == level]
+    what = ", ".join(named) if named else "the room"
+    return f"{LEVEL_NAME[level]}: {what}."
+
+
+def item_lines(a: Assessment) -> tuple[ItemLine, ...]:
+    """Each item, most severe first."""
+    lines = []
+    for each in sorted(a.items, key=lambda i: (-i.level, i.item)):
+        defects = [d.text for d in a.evidence.defects if d.item == each.item]
+        lines.append(ItemLine(
+            item_name(a.incident, each.item), "; ".join(defects) or "none found by the checks done",
+            int(each.level), item_order(each, a.incident), "; ".join(each.reasons),
+        ))  # fmt: skip
+    return tuple(lines)
+
+
+def _happened(a: Assessment) -> str:
+    event, place = a.incident.event, a.incident.place
+    when = event.at.text if event.at else "time not known"
+    where = place.room_name or place.room or place.area or "place not known"
+    summary = f" {event.summary.strip()}" if event.summary else ""
+    return f"{when}, {where.replace('_', ' ')}.{summary}"
+
+
+def causes_lead(a: Assessment) -> str:
+    """The ranking in a sentence, with how firm it is."""
+    k, leader = knowledge(), a.posterior.ranked[0]
+    p, mains = a.posterior.of(leader), a.sensitivity.mains
+    firm = {"stable": "the first rank is stable", "leaning": "the first rank only leans",
+            "open": "the first rank is open"}[a.sensitivity.firmness]  # fmt: skip
+    lead = f"Not settled; first in rank: {k.causes[leader].name.lower()}" if p < 0.5 else (
+        f"Most likely: {k.causes[leader].name.lower()}"
+    )  # fmt: skip
+    return (
+        f"{lead} ({likelihood(p)}); {firm}. Any mains fault: {likelihood(mains.point)}, "
+        f"{percent_range(mains)}."
+    )
+
+
+def cause_lines(a: Assessment, most: int = 5) -> tuple[CauseLine, ...]:
+    """The most probable causes with words and range."""
+    return tuple(
+        CauseLine(
+            knowledge().causes[c].name,
+            likelihood(a.posterior.of(c)),
+            percent_range(a.sensitivity.ranges[c]),
+        )
+        for c in a.posterior.ranked[:most]
+    )
+
+
+def causes_note(a: Assessment) -> str:
+    """What does not fit, conflicts, and the method note."""
+    k, parts = knowledge(), []
+    for each in a.misfits:
+        parts.append(f"Does not fit the first cause: {each.finding.name} ({each.state}).")
+    for finding, _ in named_conflicts(a.posterior):
+        parts.append(f"All other facts speak against the answer on: {k.findings[finding].name}.")
+    if "driven" in a.evidence.observed and k.causes[a.posterior.ranked[0]].mechanism == "static":
+        parts.append(
+            "Something kept acting, which static cannot do: the witness or static is wrong."
+        )
+    if a.evidence.disagreements:
+        named = ", ".join(k.findings[f].name for f in sorted(a.evidence.disagreements))
+        parts.append(f"Witnesses disagree on: {named}; the more adverse answer is used.")
+    return " ".join([*parts, METHOD_NOTE])
+
+
+def estimate_lines(a: Assessment) -> tuple[EstimateLine, ...]:
+    """What was physically possible, the mechanism of the first cause first, then the ceiling."""
+    static, mains = _static_lines(a), _mains_lines(a)
+    leads = knowledge().causes[a.posterior.ranked[0]].mechanism
+    lines = [*mains, *_ceiling_line(a), *static] if leads == "mains" else [*static, *mains]
+    return tuple(lines if leads == "mains" else [*lines, *_ceiling_line(a)])
+
+
+def _ceiling_line(a: Assessment) -> list[EstimateLine]:
+    ceiling = a.exposure.ceiling
+    if ceiling is None:
+        return []
+    binds = "one line to earth only" if ceiling.holds else "; ".join(ceiling.void)
+    value = amount(ceiling.value, "current") if ceiling.holds else "none"
+    return [EstimateLine("Most that one line could drive", value, "", binds)]
+
+
+def best_of(a: Assessment, mechanism: str) -> str | None:
+    """The most probable cause of a mechanism that has an estimate."""
+    for cause in a.posterior.ranked:
+        each = a.exposure.causes[cause]
+        if knowledge().causes[cause].mechanism == mechanism and each.felt is not None:
+            return cause
+    return None
+
+
+def _static_lines(a: Assessment) -> list[EstimateLine]:
+    cause = best_of(a, "static")
+    exposure = a.exposure.causes[cause].static if cause else None
+    if cause is None or exposure is None:
+        unknown = next((e.unknown for e in a.exposure.causes.values() if e.unknown), "no model")
+        return [EstimateLine("Static charge", "not known", "", unknown)]
+    threshold = load().threshold("felt")
+    rests = rests_on(a)
+    name = knowledge().causes[cause].name.lower()
+    volts = after_noticing(exposure.voltage, exposure.charge, threshold)
+    energy = after_noticing(exposure.energy, exposure.charge, threshold)
+    return [
+        EstimateLine(f"Voltage if felt: {name}", amount(volts.median, "voltage"),
+                     amount_range(volts.interval(), "voltage"), rests),
+        EstimateLine("Discharge energy, if felt", amount(energy.median, "energy"),
+                     amount_range(energy.interval(), "energy"), "charge and capacitance"),
+        EstimateLine("Chance that such a discharge is felt", percent(exposure.felt.value),
+                     percent_range(exposure.felt), "charge against the felt threshold"),
+    ]  # fmt: skip
+
+
+def _mains_lines(a: Assessment) -> list[EstimateLine]:
+    """The most probable mains cause; two of them where a mains cause leads."""
+    k, known = knowledge(), a.exposure.conditions.voltage_known
+    with_model = [
+        (c, e) for c in a.posterior.ranked if (e := a.exposure.causes[c].electrical) is not None
+    ]
+    leads = k.causes[a.posterior.ranked[0]].mechanism == "mains"
+    volts = amount(a.exposure.conditions.voltage, "voltage")
+    supply = f"supply {volts}" if known else f"{volts} taken"
+    return [
+        EstimateLine(f"Touch current if: {k.causes[c].name.lower()}",
+                     amount(e.current.median, "current"),
+                     amount_range(e.current.interval(), "current"),
+                     f"{supply}; worst zone {e.zone}")
+        for c, e in with_model[: 2 if leads else 1]
+    ]  # fmt: skip
+
+
+def rests_on(a: Assessment) -> str:
+    """The circumstances behind the static estimates, in words."""
+    c = a.exposure.conditions
+    humidity = f"{c.humidity.fraction * 100:.0f}{NBSP}% RH" if c.humidity else "humidity not known"
+    floor = (c.floor or "floor not known").replace("_", " ")
+    shoes = (c.casters if c.object_kind else c.footwear) or "shoes or wheels not known"
+    return f"{humidity}, {floor}, {shoes.replace('_', ' ')}"
+
+
+def checks_by_performer(a: Assessment) -> tuple[tuple[str, tuple[str, ...]], ...]:
+    """Next checks grouped by who may do them, in order."""
+    groups = []
+    for performer in PERFORMERS:
+        lines = tuple(check_line(n, a) for n in a.next_checks if n.kind.performer == performer)
+        if lines:
+            groups.append((PERFORMER_NAME[performer], lines))
+    return tuple(groups)
+
+
+def check_line(each: NextCheck, a: Assessment) -> str:
+    """One check in a line: what, on what, minutes, precondition."""
+    text = f"{each.kind.name}: {item_name(a.incident, each.item)}, {each.kind.minutes}{NBSP}min"
+    if each.mandatory:
+        text += ", needed for release"
+    if each.after:
+        text += f" — {'; '.join(each.after)}"
+    return text
+
+
+def severe(a: Assessment) -> bool:
+    """Whether the headline is one of the two most severe dispositions."""
+    return a.headline >= Level.WITHDRAW
