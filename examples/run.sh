@@ -11,6 +11,7 @@ out=examples/out
 site=examples/site.yaml
 set -- examples/incidents/*.yaml
 mkdir -p "$out"
+rm -f "$out"/*.pdf
 
 # Exit status 3 means: done, and something must be isolated or taken out of use. Not a failure here.
 run() {
@@ -36,3 +37,4 @@ echo
 echo "Done. The reports are in $root/$out:"
 for report in "$out"/*.pdf; do echo "    ${report##*/}"; done
 echo "The same assessments as text: $root/$out/assessments.txt"
+echo "Values to confirm, if any: $root/$out/check.txt"

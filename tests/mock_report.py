@@ -54,14 +54,14 @@ def page_one() -> dict[str, Any]:
             "Palpitations, weakness or a burn mark: emergency department at once.",
         ],
         "equipment": {
+            "condition": "Before any of this: the clinician in charge agrees to the transfer.",
             "headline": "Hold the trolley and its cord until the named checks are done.",
             "rows": [
                 {
                     "item": "Trolley A, cord C2",
                     "defect": "Earth continuity 4.1 Ω as found, limit 0.3 Ω",
                     "severity": 3,
-                    "disposition": "Withdraw and quarantine with cord, settings untouched. "
-                    "First: transfer agreed with the clinician in charge.",
+                    "disposition": "After that: withdraw and quarantine with cord, settings untouched.",
                 },
                 {
                     "item": "Preparation table",
@@ -108,9 +108,9 @@ def page_one() -> dict[str, Any]:
             ["Energy of such a discharge", "0.7 mJ", "0.04 to 6 mJ", "capacitance assumed"],
         ],
         "not_known": [
-            "Whether cord C2 was the cord of the event: swapped by a helper before arrival.",
-            "State of outlet W3; what else was on the isolated supply at 07:05.",
-            "Resistance between preparation table and room earth.",
+            "Whether cord C2 was the cord of the event, swapped before arrival",
+            "state of outlet W3 and the load at 07:05",
+            "resistance between preparation table and room earth",
         ],
         "next_checks": [
             {

@@ -182,7 +182,7 @@ def test_long_words_stay_between_the_margins(tmp_path: Path) -> None:
     right = [float(each) for each in re.findall(r'xMax="([\d.]+)"', boxes)]
 
     assert len(right) > 300
-    assert max(right) <= (210 - 20) / 25.4 * 72 + 0.5
+    assert max(right) <= (210 - 19) / 25.4 * 72 + 0.5
 
 
 @pytest.mark.parametrize("number", range(40))
@@ -277,10 +277,11 @@ def test_each_piece_of_lettering_is_drawn_in_one_run() -> None:
 
 
 def test_page_one_answers_in_order_on_one_page(full: RenderedPdf) -> None:
-    first = texts(full.content)[0]
+    first = " ".join(texts(full.content)[0].split())
     marks = [
         "The person",
         "Medical review asked for",
+        "Before any of this: the clinician",
         "Hold the trolley",
         "Earth continuity 4.1 Ω",
         "What happened",

@@ -17,7 +17,9 @@ _SIGN_WORDS = {
     "chest_symptoms": "chest_symptoms", "palpitations": "palpitations", "weakness": "weakness",
     "thrown": "thrown", "fall": "fall",
 }  # fmt: skip
-_SENSATION_WORDS = {"grip": "grip", "heat": "burn", "thrown": "thrown"}
+_SENSATION_WORDS = {
+    "grip": "grip", "heat": "burn", "thrown": "thrown", "sustained_pain": "pain_that_went_on",
+}  # fmt: skip
 
 
 @dataclass(frozen=True, slots=True)

@@ -30,6 +30,7 @@ class Citation:
     known: str = "judgement"
 
     def __post_init__(self) -> None:
+        """Refuse a citation that says nothing."""
         if not self.source.strip():
             raise BadTable("a citation needs a source")
         if self.known not in KNOWN:

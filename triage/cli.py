@@ -96,6 +96,32 @@ def report(
     raise typer.Exit(_status(found))
 
 
+@app.command()
+def blank(
+    out: Annotated[Path, typer.Argument(help="File to write; it must not exist.")],
+) -> None:
+    """Write an empty record with a new id and a comment at every field."""
+    from triage.canonical import new_record_id
+    from triage.documents.field_guide import blank_record
+    from triage.errors import CannotWrite
+
+    try:
+        with out.open("x", encoding="utf-8") as file:
+            file.write(blank_record(new_record_id()))
+    except OSError as error:
+        reason = error.strerror or "cannot be written"
+        raise CannotWrite(f"{out}: {reason}; name a new file in a folder of yours") from None
+    typer.echo(f"{out}")
+
+
+@app.command()
+def fields() -> None:
+    """Print every field of a record with its words, as Markdown."""
+    from triage.documents.field_guide import field_guide
+
+    typer.echo(field_guide(), nl=False)
+
+
 def _site(path: Path | None) -> "Site":
     from triage.site import load, no_site
     from triage.site_check import site_faults

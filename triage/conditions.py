@@ -65,7 +65,7 @@ def resolve(incident: Incident, site: Site, touched: tuple[Item, ...]) -> Condit
     voltage, known = _supply_value(incident, site, "voltage")
     frequency, _ = _supply_value(incident, site, "frequency")
     supply = supply_kind(incident, site)
-    rolling = next((i.kind for i in touched if i.kind in OBJECTS), None)
+    rolling = min((i.kind for i in touched if i.kind in OBJECTS), default=None)
     pause = incident.event.pause
     return Conditions(
         humidity, text, found["floor"], found["footwear"], found["casters"],
@@ -88,7 +88,9 @@ def care_area(incident: Incident, site: Site) -> str | None:
 
 
 def _casters(touched: tuple[Item, ...]) -> str | None:
-    return next((i.casters for i in touched if i.kind in OBJECTS and i.casters), None)
+    """The wheels of what was touched; of several objects that differ none are known."""
+    found = {i.casters for i in touched if i.kind in OBJECTS}
+    return found.pop() if len(found) == 1 else None
 
 
 def assumed(name: str) -> float:

@@ -235,9 +235,18 @@ def _open(cause: Cause, given: Inputs) -> bool:
     if getattr(given.incident.event, cause.closing_answer) == "no":
         return False
     return not any(
-        v.kind and v.kind.id == cause.closing_check and v.state == "valid_pass"
+        v.kind and v.kind.id == cause.closing_check and v.state == "valid_pass" and not v.as_left
+        and _closes(v, given)
         for v in given.evidence.verdicts
-    )
+    )  # fmt: skip
+
+
+def _closes(verdict: CheckVerdict, given: Inputs) -> bool:
+    """A log speaks for the whole place, a reading only for the item it was made on."""
+    if verdict.kind is not None and verdict.kind.quantity is None:
+        return True
+    items = given.evidence.touched + given.evidence.linked
+    return any(covers(verdict.check, item, given.incident) for item in items)
 
 
 def _unclosed(cause: Cause) -> str:
@@ -247,7 +256,8 @@ def _unclosed(cause: Cause) -> str:
 def _decide_item(item: Item, given: Inputs, gate: Gate) -> ItemDisposition:
     floors = sorted(_floors(item, given), key=lambda pair: -pair[0])
     missing = missing_checks(item, given)
-    base = Level.STATIC_CONTROLS if gate.open and not missing else Level.HOLD
+    named = item.kind is not None and item.kind not in cannot_be_released()
+    base = Level.STATIC_CONTROLS if gate.open and named and not missing else Level.HOLD
     level = max([base, *(level for level, _ in floors)])
     reasons = tuple(dict.fromkeys(text for _, text in floors))
     if not reasons:

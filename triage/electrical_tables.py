@@ -2,11 +2,11 @@
 
 from dataclasses import dataclass
 from functools import cache
-from importlib.resources import files
 from typing import Any
 
 from triage.citation import Citation
 from triage.errors import BadTable, InvalidValue
+from triage.tables import table
 
 SEEN = ("yes", "no", "partly")
 """Whether a kind of monitor sees a condition; `partly` never counts as seen."""
@@ -110,7 +110,7 @@ def monitor_tables() -> MonitorTables:
     Raises:
         BadTable: an unknown word, or an id given twice.
     """
-    given = _yaml("monitors.yaml")
+    given = table("monitors")
     tables = MonitorTables(
         sight=tuple(Sight(**each) for each in given["sight"]),
         void=tuple(Void(**each) for each in given["void"]),
@@ -144,7 +144,7 @@ def other_sources() -> tuple[OtherSource, ...]:
     Raises:
         BadTable: a source without its question, proof or exclusion, or an id given twice.
     """
-    sources = tuple(_source(each) for each in _yaml("other_sources.yaml")["sources"])
+    sources = tuple(_source(each) for each in table("other_sources")["sources"])
     _check_unique("other_sources.yaml", [each.id for each in sources])
     for each in sources:
         if not (each.causes and each.question and each.shows and each.excludes):
@@ -176,13 +176,6 @@ def _source(given: dict[str, Any]) -> OtherSource:
     parts["numbers"] = {key: float(value) for key, value in given["numbers"].items()}
     parts["citation"] = Citation(**{key: str(each) for key, each in given["citation"].items()})
     return OtherSource(**parts)
-
-
-def _yaml(name: str) -> dict[str, Any]:
-    from yaml import CSafeLoader, load
-
-    loaded: dict[str, Any] = load((files("triage") / "data" / name).read_text("utf-8"), CSafeLoader)
-    return loaded
 
 
 def _check_words(where: str, words: tuple[str, ...], known: tuple[str, ...]) -> None:

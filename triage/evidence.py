@@ -15,7 +15,14 @@ from triage.incident import Contact, Incident, Item, Statement
 from triage.knowledge import Finding, knowledge
 from triage.limits import Limit
 from triage.quantity import Quantity
-from triage.validity import MAINS_KINDS, MAINS_POWER, CheckVerdict, covers, is_wet
+from triage.validity import (
+    MAINS_KINDS,
+    MAINS_POWER,
+    CheckVerdict,
+    covers,
+    find_item,
+    is_wet,
+)
 
 OBJECTS = frozenset({"cart", "stool", "bed", "table", "pole", "stand"})
 """Kinds of item that can float on wheels or feet."""
@@ -100,7 +107,11 @@ def gather(incident: Incident, verdicts: tuple[CheckVerdict, ...], supply: str |
     """
     touched, linked = involved(incident)
     told = dict(_told(incident, touched, supply))
-    told |= {each.finding.id: each for each in _from_checks(incident, verdicts, touched, supply)}
+    told |= {
+        each.finding.id: each
+        for each in _from_checks(incident, verdicts, touched, supply)
+        if not _would_silence(each, told.get(each.finding.id))
+    }
     _merge_driven(told, incident.statements)
     return Evidence(
         observed=told,
@@ -112,6 +123,12 @@ def gather(incident: Incident, verdicts: tuple[CheckVerdict, ...], supply: str |
         facts=frozenset(_facts(incident, verdicts, touched + linked)),
         signs=frozenset(sign for person in incident.persons for sign in person.signs),
     )
+
+
+def _would_silence(check: Observed, said: Observed | None) -> bool:
+    """Whether a check that found nothing would take an adverse answer off the record."""
+    adverse = check.finding.adverse
+    return said is not None and said.state in adverse and check.state not in adverse
 
 
 def involved(incident: Incident) -> tuple[tuple[Item, ...], tuple[Item, ...]]:
@@ -131,6 +148,14 @@ def is_powered(item: Item) -> bool:
     if item.power in MAINS_POWER or (item.power is None and item.kind not in FIXED):
         return True
     return item.kind in MAINS_KINDS or item.kind is None
+
+
+def speaks_about(verdict: CheckVerdict, touched: tuple[Item, ...], incident: Incident) -> bool:
+    """Whether a check was made on what was touched, or on the person who touched it."""
+    of = find_item(incident, verdict.check.of)
+    if of is not None and of.kind == "person":
+        return True
+    return any(covers(verdict.check, item, incident) for item in touched)
 
 
 def item_supply(item: Item, supply: str | None) -> str | None:
@@ -182,7 +207,7 @@ def _told_states(
         yield "glove", _glove(incident.contacts), "said"
     yield "recent_change", _any_yes([item.recent_change for item in touched]), "said"
     yield "floor_finish_changed", incident.surroundings.floor_finish_changed, "said"
-    if supply != "earthed":
+    if supply != "earthed" or incident.supply.alarm == "yes":
         yield "monitor_alarm", incident.supply.alarm, incident.supply.alarm_source
     yield "trip", incident.supply.trip, incident.supply.trip_source
     yield "electrosurgery_active", event.electrosurgery_active, event.electrosurgery_source
@@ -339,7 +364,7 @@ def _check_state(
     mine = [v for v in verdicts if v.kind and v.kind.id in kinds and not v.as_left]
     if any(v.state == "valid_fail" for v in mine):
         return "yes"
-    readings = [v for v in mine if v.state == "informative" and v.kind and v.value]
+    readings = [v for v in mine if v.state == "informative" and speaks_about(v, touched, incident)]
     answers = [a for v in readings if v.kind and v.value and (a := _above(v.kind.id, v.value))]
     if answers:
         return "no" if "no" in answers else "yes"
@@ -371,9 +396,10 @@ def _pass_covers_all(
 
 def _defects(incident: Incident, verdicts: tuple[CheckVerdict, ...]) -> Iterator[Defect]:
     for each in verdicts:
-        if each.state == "valid_fail" and each.kind is not None and not each.as_left:
+        if each.state == "valid_fail" and each.kind is not None:
             value = f": {each.value.text}" if each.value else ""
-            text = f"{each.kind.name} failed{value}"
+            stage = " as left" if each.as_left else ""
+            text = f"{each.kind.name} failed{stage}{value}"
             yield Defect(each.check.of, each.kind.id, text, each.value, each.limit)
     for item in incident.items:
         for condition in ("damaged", "hot", "wet"):

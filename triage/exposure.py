@@ -20,7 +20,7 @@ from triage.electrical_exposure import (
     electrical_exposure,
 )
 from triage.errors import InvalidValue
-from triage.evidence import involved
+from triage.evidence import involved, speaks_about
 from triage.fields import table
 from triage.incident import Incident, Item, Supply
 from triage.knowledge import Knowledge, knowledge
@@ -99,14 +99,17 @@ def estimate_exposure(
     touched, _ = involved(incident)
     found = c.resolve(incident, site, touched)
     reference = _reference(k, c.care_area(incident, site))
-    measured = _measured(verdicts)
+    about = tuple(v for v in verdicts if speaks_about(v, touched, incident))
+    measured = _measured(about)
     causes = {name: _static(name, found, measured, reference, k) for name in STATIC_CAUSES}
-    told, void = _electrical_story(incident, found, touched, verdicts, site)
-    causes |= {name: _electrical(name, told, found, k) for name in ELECTRICAL_CAUSES}
+    read = _electrical_story(incident, found, touched, about)
+    monitored = read.hazard_current is not None or read.insulation is not None
+    void = tuple(_void(incident, site)) if monitored else ()
+    causes |= {name: _electrical(name, read, bool(void), found, k) for name in ELECTRICAL_CAUSES}
     for cause in k.causes:
         causes.setdefault(cause, CauseExposure(cause, None, None, None, 1.0))
     return Exposure(
-        found, causes, ceiling(told, void), _plausible(causes, k),
+        found, causes, ceiling(read, void), _plausible(causes, k),
         tuple(_notes(found, void)),
     )  # fmt: skip
 
@@ -157,20 +160,29 @@ def _static(
 
 
 def _electrical(
-    cause: str, told: ElectricalStory, found: Conditions, k: Knowledge
+    cause: str, read: ElectricalStory, void: bool, found: Conditions, k: Knowledge
 ) -> CauseExposure:
-    """A mains cause; an isolated line needs an isolated supply to have an estimate."""
+    """A mains cause; an isolated line needs an isolated supply to have an estimate.
+
+    A reading that binds nothing excludes nothing, but a high one still counts: the factor is then
+    the larger of the two, so that a doubt about the reading never speaks for static.
+    """
     if cause.startswith("isolated_") and found.isolated is False:
         return CauseExposure(cause, None, None, None, 1.0, "the supply is not isolated")
+    told = replace(read, hazard_current=None, insulation=None) if void else read
     try:
         here = electrical_exposure(cause, told)
-        weighed = electrical_exposure(cause, replace(told, moisture=told.moisture or "dry"))
+        weighed = [
+            electrical_exposure(cause, replace(each, moisture=each.moisture or "dry")).felt.value
+            for each in ((told, read) if void else (told,))
+        ]
         usual = ElectricalStory(told.voltage, told.frequency, told.medical, "dry")
         there = electrical_exposure(cause, usual).felt.value
     except InvalidValue as error:
         return CauseExposure(cause, None, None, None, 1.0, str(error))
-    factor = _clipped(weighed.felt.value, there, k.mains_factor)
-    return CauseExposure(cause, None, here, here.felt, factor)
+    return CauseExposure(
+        cause, None, here, here.felt, _clipped(max(weighed), there, k.mains_factor)
+    )
 
 
 def _clipped(here: float, there: float, bounds: tuple[float, float]) -> float:
@@ -182,23 +194,23 @@ def _clipped(here: float, there: float, bounds: tuple[float, float]) -> float:
 
 def _electrical_story(
     incident: Incident, found: Conditions, touched: tuple[Item, ...],
-    verdicts: tuple[CheckVerdict, ...], site: Site,
-) -> tuple[ElectricalStory, tuple[str, ...]]:  # fmt: skip
-    supply = incident.supply
-    current, insulation = supply.current_reading, supply.resistance_reading
-    void = tuple(_void(incident, site)) if current or insulation else ()
-    told = ElectricalStory(
+    verdicts: tuple[CheckVerdict, ...],
+) -> ElectricalStory:  # fmt: skip
+    """The circumstances of the contact, with the monitor's reading whether it binds or not."""
+    current, insulation = incident.supply.current_reading, incident.supply.resistance_reading
+    return ElectricalStory(
         found.voltage,
         found.frequency,
         any(item.kind in _MEDICAL or item.kind is None for item in touched) or not touched,
         _moisture(incident),
         _series(incident, found),
-        current.value if current and not void and not current.bound else None,
-        insulation.value if insulation and not void and not insulation.bound else None,
+        current.value if current and not current.bound else None,
+        insulation.value if insulation and not insulation.bound else None,
         _valid_reading(verdicts, "two_metal_voltage"),
-        _valid_reading(verdicts, "touch_current"),
-    )
-    return told, void
+        # With the earth closed the reading says nothing about the same item with its earth open.
+        _valid_reading(tuple(v for v in verdicts if "earth_open" in v.check.state),
+                       "touch_current"),
+    )  # fmt: skip
 
 
 def _void(incident: Incident, site: Site) -> list[str]:

@@ -3,8 +3,6 @@
 Every field may be left out or `unknown`; unknown is never absent and never normal.
 """
 
-from dataclasses import dataclass
-
 from triage import words as w
 from triage.clock import Moment
 from triage.fields import (
@@ -15,6 +13,7 @@ from triage.fields import (
     ident,
     part,
     parts,
+    record_part,
     reference,
     references,
     several,
@@ -29,7 +28,7 @@ SCHEMA = "1"
 """Version of the form of record, site file and assessment."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class CrossReference:
     """A number under which somebody else keeps this incident."""
 
@@ -37,7 +36,7 @@ class CrossReference:
     number: str | None = text("The number as written.", 80)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Place:
     """Where it happened."""
 
@@ -48,7 +47,7 @@ class Place:
     department: str | None = text("Department of the event.", 120)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Person:
     """One affected person: role only, never a name or a patient identifier."""
 
@@ -62,7 +61,7 @@ class Person:
     review_by: str | None = text("By which role.", 80)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Statement:
     """One witness's own words, and apart from them what somebody mapped them to."""
 
@@ -87,7 +86,7 @@ class Statement:
     spark_seen: str | None = yes_no("Was a spark seen?")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Photo:
     """One photograph by its digest."""
 
@@ -96,7 +95,7 @@ class Photo:
     at: Moment | None = time("When taken.")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class HandOver:
     """One step of custody of an item."""
 
@@ -109,7 +108,7 @@ class HandOver:
     contained: str | None = text("How contained, such as a breathable bag.", 200)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Scene:
     """What the scene was like, what was changed in it, and who depends on it."""
 
@@ -130,7 +129,7 @@ class Scene:
     custody: tuple[HandOver, ...] = parts("Custody.", HandOver)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Item:
     """One thing involved: device, cord, outlet, circuit, furniture, instrument."""
 
@@ -156,14 +155,15 @@ class Item:
     clearance: Quantity | None = amount("Height of its metal over the floor.", "length",
                                         possible=(0.001, 5))  # fmt: skip
     capacitance: Quantity | None = amount("Capacitance to earth, measured.", "capacitance",
-                                          possible=(1e-12, 1e-6), plausible=(5e-12, 5e-9))  # fmt: skip
+                                          possible=(1e-12, 1e-6),
+                                          plausible=(5e-12, 5e-9))  # fmt: skip
     immunity: Quantity | None = amount("Declared discharge immunity.", "voltage",
                                        possible=(100, 60e3), plausible=(1e3, 30e3))  # fmt: skip
     last_good: Moment | None = time("Last test passed before the event.")
     last_good_value: str | None = text("Its values, as written.", 200)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Contact:
     """One person touching one or two items."""
 
@@ -177,7 +177,7 @@ class Contact:
     also_touching: str | None = word("What else was touched at that moment.", w.ALSO_TOUCHING)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Event:
     """What happened in the seconds before."""
 
@@ -190,7 +190,7 @@ class Event:
     electrosurgery_active: str | None = yes_no("Was electrosurgery active at that second?",
                                                YES_ADVERSE)  # fmt: skip
     electrosurgery_source: str | None = word("How that is known.", w.SOURCE)
-    pulse_delivered: str | None = yes_no("Was a pulse delivered (defibrillator, pacer, stimulator)?",
+    pulse_delivered: str | None = yes_no("Was a pulse delivered (defibrillator, stimulator)?",
                                          YES_ADVERSE)  # fmt: skip
     pulse_source: str | None = word("How that is known.", w.SOURCE)
     line_event: str | None = yes_no("Lightning, supply switching or line work at that minute?",
@@ -200,7 +200,7 @@ class Event:
     device_upset: str | None = yes_no("Did a device reset or misbehave at that moment?")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Surroundings:
     """Air, floor and clothing at the place and time."""
 
@@ -210,9 +210,11 @@ class Surroundings:
     humidity_at: Moment | None = time("When it was read.")
     sensor: str | None = text("Which sensor or instrument.", 80)
     temperature_at_sensor: Quantity | None = amount("Temperature at that sensor.", "temperature",
-                                                    possible=(-30, 60), plausible=(10, 35))  # fmt: skip
+                                                    possible=(-30, 60),
+                                                    plausible=(10, 35))  # fmt: skip
     temperature_at_place: Quantity | None = amount("Temperature at the place.", "temperature",
-                                                   possible=(-30, 60), plausible=(10, 35))  # fmt: skip
+                                                   possible=(-30, 60),
+                                                   plausible=(10, 35))  # fmt: skip
     log_excerpt: str | None = text("The lines of the log that were used.", 6000)
     floor: str | None = word("Floor.", w.FLOOR)
     floor_finish_changed: str | None = yes_no("New wax or finish in the last weeks?")
@@ -224,7 +226,7 @@ class Surroundings:
     air_handling: str | None = word("Air handling at that time.", w.AIR_HANDLING)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Supply:
     """The supply of the place and its monitor."""
 
@@ -235,11 +237,13 @@ class Supply:
                                         possible=(1, 1000), plausible=(49, 61))  # fmt: skip
     monitor: str | None = word("Kind of monitor.", w.MONITOR)
     current_reading: Quantity | None = amount("Total hazard current shown.", "current",
-                                              possible=(0, 1), plausible=(0.00001, 0.05))  # fmt: skip
+                                              possible=(0, 1),
+                                              plausible=(0.00001, 0.05))  # fmt: skip
     resistance_reading: Quantity | None = amount("Insulation resistance shown.", "resistance",
-                                                 possible=(0, 1e9), plausible=(1e3, 2e7))  # fmt: skip
+                                                 possible=(0, 1e9),
+                                                 plausible=(1e3, 2e7))  # fmt: skip
     read_at: Moment | None = time("When it was read.")
-    changed_since: str | None = yes_no("Was anything plugged or unplugged between event and reading?",
+    changed_since: str | None = yes_no("Was anything plugged or unplugged before the reading?",
                                        YES_ADVERSE)  # fmt: skip
     alarm: str | None = yes_no("Was the monitor in alarm at the event?", YES_ADVERSE)
     alarm_source: str | None = word("How that is known.", w.SOURCE)
@@ -248,7 +252,7 @@ class Supply:
     monitor_tested: Moment | None = time("Last test of the monitor.")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Check:
     """One check of one item."""
 
@@ -262,7 +266,7 @@ class Check:
     method: str | None = ident("Method, by its name in the table of checks.")
     supply: str | None = word("Supply used for the check.", w.SUPPLY)
     stage: str | None = word("As found, after disturbance, as left.", w.STAGE)
-    disturbed: tuple[str, ...] = several("What was changed before it.", w.CHANGES)
+    disturbed: tuple[str, ...] = several("What was changed before it.", w.DISTURBED)
     state: tuple[str, ...] = several("State of the item during the check.", w.TEST_STATE)
     result: str | None = word("Result.", w.RESULT)
     value: str | None = text("Value with unit.", 60)
@@ -275,7 +279,7 @@ class Check:
     reason: str | None = text("Why not practicable, or what was seen.", 500)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Action:
     """One action with an owner."""
 
@@ -287,7 +291,7 @@ class Action:
     verified: str | None = text("By what measurement it was verified.", 300)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Notification:
     """Somebody told."""
 
@@ -296,7 +300,7 @@ class Notification:
     number: str | None = text("Under what number.", 80)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class LookBack:
     """An answer to a look-back question after a confirmed defect."""
 
@@ -306,7 +310,7 @@ class LookBack:
     at: Moment | None = time("When.")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Outcome:
     """How the case ended."""
 
@@ -325,7 +329,7 @@ class Outcome:
     look_back: tuple[LookBack, ...] = parts("Look-back answers.", LookBack)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Entry:
     """Who added what to the record, and when."""
 
@@ -334,7 +338,7 @@ class Entry:
     what: str | None = text("What was added or changed.", 300)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Incident:
     """One complaint with its circumstances, as recorded."""
 

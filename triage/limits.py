@@ -7,12 +7,12 @@ from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache
-from importlib.resources import files
 from typing import Any
 
 from triage.citation import Citation
 from triage.errors import BadTable, InvalidValue
 from triage.quantity import parse
+from triage.tables import table
 
 ANY = "any"
 """Word of a row that does not depend on the property."""
@@ -205,10 +205,7 @@ def load_limits() -> Limits:
     Raises:
         BadTable: rows that contradict each other, or words and units nobody knows.
     """
-    from yaml import CSafeLoader, load
-
-    text = (files("triage") / "data" / "limits.yaml").read_text("utf-8")
-    return read_limits(load(text, CSafeLoader))
+    return read_limits(table("limits"))
 
 
 def read_limits(table: Mapping[str, list[dict[str, Any]]]) -> Limits:

@@ -3,7 +3,6 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache
-from importlib.resources import files
 from math import log
 from typing import Any
 
@@ -14,6 +13,7 @@ from triage.estimate import Estimate, product
 from triage.material_rows import KINDS, Quantity, Row, read_quantity, read_response, read_row
 from triage.physics.charging import Mover
 from triage.physics.humidity import Humidity, Response, resistance_factor
+from triage.tables import table
 
 QUANTITY_TABLES = ("walking", "rolling", "sensation", "held_metal")
 """Tables that map a word to one quantity."""
@@ -173,14 +173,14 @@ class Materials:
     def citations(self) -> dict[str, Citation]:
         """Every number that can be printed, by its path in the tables."""
         found = {f"humidity_response.{n}": c for n, c in self.response_citations.items()}
-        for table in QUANTITY_TABLES:
-            found |= {f"{table}.{n}": q.citation for n, q in getattr(self, table).items()}
-        for table in ROW_TABLES:
-            for word, row in getattr(self, table).items():
-                for part in KINDS:
-                    quantity = getattr(row, part)
+        for part in QUANTITY_TABLES:
+            found |= {f"{part}.{n}": q.citation for n, q in getattr(self, part).items()}
+        for part in ROW_TABLES:
+            for word, row in getattr(self, part).items():
+                for kind in KINDS:
+                    quantity = getattr(row, kind)
                     if quantity is not None:
-                        found[f"{table}.{word}.{part}"] = quantity.citation
+                        found[f"{part}.{word}.{kind}"] = quantity.citation
         return found
 
 
@@ -206,10 +206,7 @@ def load() -> Materials:
     Raises:
         BadTable: a row without citation, an unknown key or word, or a number that cannot be.
     """
-    import yaml
-
-    text = (files("triage") / "data" / "materials.yaml").read_text("utf-8")
-    return build(yaml.load(text, Loader=yaml.CSafeLoader))
+    return build(table("materials"))
 
 
 def build(data: Mapping[str, Any]) -> Materials:

@@ -53,12 +53,13 @@ KINDS = tuple(_UNITS)
 """The kinds of quantity. SI inside, but % RH and °C for humidity and temperature, as the
 humidity formulas are published."""
 
-_EXAMPLE = {
+EXAMPLE = {
     "current": "1.9 mA", "voltage": "230 V", "resistance": "0.08 ohm", "capacitance": "130 pF",
     "charge": "0.2 uC", "energy": "0.6 mJ", "power": "90 W", "frequency": "50 Hz",
     "force": "115 g", "length": "10 mm", "duration": "2 s", "relative_humidity": "24 %",
     "humidity_points": "3 points", "temperature": "21 degC", "temperature_difference": "2 K",
 }  # fmt: skip
+"""How each kind of quantity is typed."""
 
 # Escapes, since editors merge the look-alikes: micro sign, Greek mu, ohm sign to Greek omega.
 _ONE_SPELLING = str.maketrans({"\u00b5": "u", "\u03bc": "u", "\u2126": "\u03a9"})
@@ -123,14 +124,14 @@ def parse(text: str, kind: str) -> Quantity:
     match = _SHAPE.fullmatch(text.strip())
     if not match:
         raise InvalidValue(
-            f"'{text}' is not a {kind.replace('_', ' ')}; write it like '{_EXAMPLE[kind]}'"
+            f"'{text}' is not a {kind.replace('_', ' ')}; write it like '{EXAMPLE[kind]}'"
         )
     unit = _normal_unit(match["unit"] or "")
     if not unit:
-        raise InvalidValue(f"'{text}' has no unit; write it like '{_EXAMPLE[kind]}'")
+        raise InvalidValue(f"'{text}' has no unit; write it like '{EXAMPLE[kind]}'")
     if unit not in _UNITS[kind]:
         raise InvalidValue(
-            f"'{unit}' is not a unit of {kind.replace('_', ' ')}; write it like '{_EXAMPLE[kind]}'"
+            f"'{unit}' is not a unit of {kind.replace('_', ' ')}; write it like '{EXAMPLE[kind]}'"
         )
     value = _number(match["number"]) * _UNITS[kind][unit]
     if not math.isfinite(value):

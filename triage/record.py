@@ -133,22 +133,21 @@ def _check_questions(reader: Reader, incident: Incident) -> None:
     for number, contact in enumerate(incident.contacts):
         if len(contact.items) > 2:
             reader.fault(f"contacts[{number}].items", "a contact names one item or two")
-    if (
-        incident.scene.changes
-        and "none" in incident.scene.changes
-        and len(incident.scene.changes) > 1
-    ):
-        reader.question("scene.changes", "'none' stands beside a change; the change counts")
+    for path, nothing, answers in _several_answers(incident):
+        if nothing in answers and len(answers) > 1:
+            reader.question(path, f"'{nothing}' stands beside another answer; the other counts")
+
+
+def _several_answers(incident: Incident) -> Iterator[tuple[str, str, tuple[str, ...]]]:
+    """Lists that may hold a word for nothing: path, that word, the list."""
+    yield "scene.changes", "none", incident.scene.changes
+    yield "scene.flammable", "none", incident.scene.flammable
     for number, person in enumerate(incident.persons):
-        if "none" in person.signs and len(person.signs) > 1:
-            reader.question(
-                f"persons[{number}].signs", "'none' stands beside a sign; the sign counts"
-            )
+        yield f"persons[{number}].signs", "none", person.signs
     for number, item in enumerate(incident.items):
-        if "intact" in item.condition and len(item.condition) > 1:
-            reader.question(
-                f"items[{number}].condition", "'intact' stands beside a fault; it counts"
-            )
+        yield f"items[{number}].condition", "intact", item.condition
+    for number, check in enumerate(incident.checks):
+        yield f"checks[{number}].disturbed", "none", check.disturbed
 
 
 def moments(part: Any) -> Iterator[Moment]:

@@ -157,6 +157,6 @@ def _above(measured: Measured, item: Item, verdicts: tuple[CheckVerdict, ...]) -
     bound = parse(measured.above, kind).value
     return any(
         v.kind and v.kind.id == measured.check and v.state == "informative" and v.value
-        and v.check.of == item.id and v.value.value > bound and v.value.bound != "<"
+        and not v.as_left and v.check.of == item.id and v.value.value > bound and v.value.bound != "<"
         for v in verdicts
     )  # fmt: skip

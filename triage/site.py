@@ -19,6 +19,7 @@ from triage.fields import (
     ident,
     part,
     parts,
+    record_part,
     several,
     text,
     time,
@@ -49,7 +50,7 @@ _DUTY: WordList = {
 }
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Room:
     """One room; its id survives renaming."""
 
@@ -70,7 +71,7 @@ class Room:
     outlet_group: str | None = text("Outlet group or panel.", 80)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Edition:
     """The edition of limits in force for one check."""
 
@@ -78,7 +79,7 @@ class Edition:
     edition: str | None = text("Edition id of the table of limits.", 80)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Tightened:
     """A limit made stricter than shipped."""
 
@@ -86,7 +87,7 @@ class Tightened:
     value: str | None = text("Stricter value with unit.", 60)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Raised:
     """A cause made more probable than shipped; only mains faults may be raised."""
 
@@ -95,7 +96,7 @@ class Raised:
     reason: str | None = text("Why.", 300)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Policy:
     """How careful the house is; never less than shipped."""
 
@@ -107,7 +108,7 @@ class Policy:
     )
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Wording:
     """Texts the organisation prints; plain text only."""
 
@@ -116,7 +117,7 @@ class Wording:
     circulation_note: str | None = text("Note on circulated copies.", 300)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Contacts:
     """Whom to call, by role."""
 
@@ -127,7 +128,7 @@ class Contacts:
     blood_exposure: str | None = text("Blood-exposure line.", 120)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Approval:
     """Who approved this site file."""
 
@@ -136,7 +137,7 @@ class Approval:
     review_due: Moment | None = time("Review due.")
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Retention:
     """How long cases are kept."""
 
@@ -144,7 +145,7 @@ class Retention:
     rare_role_threshold: int | None = count("Roles with fewer holders are grouped.", 1, 100)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class Cost:
     """Cost of a static control measure at this site."""
 
@@ -152,7 +153,7 @@ class Cost:
     cost: str | None = text("Cost, as written.", 60)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@record_part
 class SiteFile:
     """The facility's own file."""
 

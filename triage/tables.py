@@ -1,8 +1,15 @@
-"""The shipped tables: read once, and their common digest."""
+"""The shipped tables: read once, and their common digest.
 
+Experts edit YAML; reading it is slow, so each table is kept beside the compiled Python as JSON,
+named after the digest of the YAML it came from. A stale or damaged copy can therefore never speak.
+"""
+
+import json
+import os
 from collections.abc import Mapping
 from functools import cache
 from importlib.resources import files
+from pathlib import Path
 from typing import Any
 
 from triage.canonical import digest
@@ -17,14 +24,52 @@ def table(name: str) -> Any:
     Raises:
         BadTable: the file is not readable as YAML.
     """
+    source = _folder() / f"{name}.yaml"
+    data = source.read_bytes()
+    copy = _folder() / "__pycache__" / f"{name}.{digest(data)}.json"
+    kept = _kept(copy)
+    if kept is not None:
+        return kept
+    found = _parsed(data.decode(), source.name)
+    _keep(copy, found)
+    return found
+
+
+def _folder() -> Path:
+    return Path(str(files("triage"))) / "data"
+
+
+def _parsed(text: str, name: str) -> Any:
     import yaml
 
     loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
-    text = (files("triage") / "data" / f"{name}.yaml").read_text("utf-8")
     try:
         return yaml.load(text, Loader=loader)
     except yaml.YAMLError as error:
-        raise BadTable(f"data/{name}.yaml: {error}") from None
+        raise BadTable(f"data/{name}: {error}") from None
+
+
+def _kept(copy: Path) -> Any:
+    """The kept copy, or None where there is none or its own digest does not fit."""
+    try:
+        seal, _, body = copy.read_text("utf-8").partition("\n")
+    except (OSError, UnicodeDecodeError):
+        return None
+    return json.loads(body) if seal == digest(body.encode()) else None
+
+
+def _keep(copy: Path, found: Any) -> None:
+    """Keep a copy where the place allows it; another process may be doing the same."""
+    body = json.dumps(found, ensure_ascii=False)
+    part = copy.with_suffix(f".{os.getpid()}.part")
+    try:
+        copy.parent.mkdir(exist_ok=True)
+        for old in copy.parent.glob(f"{copy.name.split('.')[0]}.*.json"):
+            old.unlink()
+        part.write_text(f"{digest(body.encode())}\n{body}", "utf-8")
+        part.replace(copy)
+    except OSError:
+        return  # a read-only installation reads the YAML every time
 
 
 def citation(row: Mapping[str, Any], where: str) -> Citation:
@@ -43,9 +88,8 @@ def citation(row: Mapping[str, Any], where: str) -> Citation:
 @cache
 def knowledge_digest() -> str:
     """SHA-256 over every shipped table, by name; a changed comment counts as a change too."""
-    folder = files("triage") / "data"
     parts = []
-    for name in sorted(each.name for each in folder.iterdir() if each.name.endswith(".yaml")):
-        content = (folder / name).read_bytes().replace(b"\r\n", b"\n")
-        parts.append(f"{name} {digest(content)}\n")
+    for path in sorted(_folder().glob("*.yaml")):
+        content = path.read_bytes().replace(b"\r\n", b"\n")
+        parts.append(f"{path.name} {digest(content)}\n")
     return digest("".join(parts).encode())

@@ -73,7 +73,7 @@ def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:
     kind = check_kinds().get(check.kind or "")
     if kind is None:
         return CheckVerdict(check, None, "not_done", reasons=(_unknown_kind(check),))
-    if check.result == "not_practicable":
+    if check.result == "not_practicable" and check.value is None:
         return CheckVerdict(
             check, kind, "not_practicable", reasons=(check.reason or "no reason given",)
         )
@@ -84,11 +84,13 @@ def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:
     if outcome is None:
         return CheckVerdict(check, kind, "not_done", reasons=_open(judgements), value=value)
     as_left = check.stage == "as_left"
-    reasons = tuple(_reasons(check, kind, item, incident, site)) + ((problem,) if problem else ())
+    doubts = tuple(_doubts(check, kind, item, incident, site)) + ((problem,) if problem else ())
     if not judgements and value is not None and _limits_from(check, kind) is not None:
-        reasons += ("no limit on file fits this item, method and state",)
+        doubts += ("no limit on file fits this item, method and state",)
+    away = tuple(_away_from_event(check, kind, item, incident, site))
+    state = _state(kind, outcome, bool(doubts), bool(away))
     return CheckVerdict(
-        check, kind, _state(kind, outcome, bool(reasons)), as_left, reasons, value,
+        check, kind, state, as_left, doubts + away, value,
         _deciding_limit(judgements), judgements,
     )  # fmt: skip
 
@@ -109,15 +111,19 @@ def _open(judgements: tuple[Judgement, ...]) -> tuple[str, ...]:
     return ("no result and no value",)
 
 
-def _state(kind: CheckKind, outcome: str, invalid: bool) -> str:
-    """Invalid pass = not done; invalid fail = hold, but earth and damage always count."""
+def _state(kind: CheckKind, outcome: str, doubtful: bool, away: bool) -> str:
+    """Invalid pass = not done; invalid fail = hold, but earth and damage always count.
+
+    What only puts a check away from the event (another cord, cleaned first, a milder state) takes
+    the worth from a pass and never from a fail: the item fails all the same, and an adverse answer
+    about the scene must not turn a defect into a doubt.
+    """
+    if outcome == "fail":
+        counts = not doubtful or kind.id in _ALWAYS_COUNT_AS_FAIL
+        return "valid_fail" if counts else "invalid_fail"
     if outcome == "informative":
-        return "invalid_pass" if invalid else "informative"
-    if not invalid:
-        return f"valid_{outcome}"
-    if outcome == "fail" and kind.id in _ALWAYS_COUNT_AS_FAIL:
-        return "valid_fail"
-    return f"invalid_{outcome}"
+        return "invalid_pass" if doubtful or away else "informative"
+    return "invalid_pass" if doubtful or away else "valid_pass"
 
 
 def _value(check: Check, kind: CheckKind) -> tuple[Quantity | None, str | None]:
@@ -223,10 +229,10 @@ def _deciding_limit(judgements: tuple[Judgement, ...]) -> Limit | None:
     return rows[0].limit if rows else None
 
 
-def _reasons(
+def _doubts(
     check: Check, kind: CheckKind, item: Item | None, incident: Incident, site: Site
 ) -> Iterator[str]:
-    """Every reason why the check does not count."""
+    """Why the reading itself is doubtful, whatever it says."""
     if item is None:
         yield "it does not say which item was checked"
     elif item.kind not in (None, *kind.applies_to) and kind.counts_as_pass != "any_valid_value":
@@ -237,13 +243,20 @@ def _reasons(
         yield "only an item of class II has no protective earth to test"
     if accepted and accepted.value_needed and kind.quantity and check.value is None:
         yield "no value was written down"
-    if check.unit_disputed == "yes":
-        yield "the unit is in doubt"
     if kind.quantity and kind.id not in _NO_INSTRUMENT:
         yield from _calibration_reasons(check, site)
     yield from _time_reasons(check, incident, site)
+
+
+def _away_from_event(
+    check: Check, kind: CheckKind, item: Item | None, incident: Incident, site: Site
+) -> Iterator[str]:
+    """Why a pass does not speak about the event."""
+    if check.unit_disputed == "yes":
+        yield "the unit is in doubt"
     if check.stage == "as_left":
         return
+    accepted = next((each for each in kind.accepts if each.method == check.method), None)
     yield from _set_reasons(check, item)
     yield from _disturbance_reasons(check, item, incident, site)
     if item is not None and not (accepted and accepted.any_state):

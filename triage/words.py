@@ -199,6 +199,11 @@ CHANGES: WordList = {
     "cord_swapped": (1, "cord or outlet changed"),
     "repaired": (1, "repaired, tightened or opened"),
 }
+DISTURBED: WordList = {
+    **{word: (-1, CHANGES[word][1]) for word in ("moved", "unplugged", "powered_down")},
+    **{word: CHANGES[word] for word in ("none", "cleaned", "cord_swapped", "repaired")},
+}
+"""Changes before one check: a mild one that is named is better than not knowing."""
 FLAMMABLE: WordList = {
     "none": (-1, "neither within reach"),
     "wet_alcohol": (1, "wet alcohol on skin, hands or drapes"),

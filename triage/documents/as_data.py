@@ -19,7 +19,8 @@ def as_data(a: Assessment) -> dict[str, Any]:
         "digests": {"record": a.record.digest, "site": a.site.digest, "knowledge": a.knowledge},
         "program": a.version,
         "at": a.at.text if a.at else None,
-        "person": {"urgency": a.care.urgency, "actions": list(s.person), "reviews": list(s.reviews)},
+        "person": {"urgency": a.care.urgency, "actions": list(s.person),
+                   "reviews": list(s.reviews)},
         "condition": s.condition,
         "headline": a.headline.name.lower(),
         "items": [

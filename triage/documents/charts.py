@@ -39,7 +39,6 @@ from triage.documents.svg import (
     with_prefix,
 )
 
-
 LABELS = 196.0
 """Points; the column of row labels, at the left of a chart of rows."""
 

@@ -74,11 +74,13 @@ def _statement_heading(each: Statement) -> Iterator[str]:
 
 
 def _mapped(each: Statement) -> Iterator[str]:
-    for name, words, value in (("felt", w.SENSATION, each.sensation), ("when", w.TIMING, each.timing),
+    for name, words, value in (("felt", w.SENSATION, each.sensation),
+                               ("when", w.TIMING, each.timing),
                                ("how long", w.DURATION, each.duration)):  # fmt: skip
         if value is not None:
             yield f"{name}: {meaning(words, value)}"
-    for name, answer in (("again at once", each.repeat_at_once), ("others felt it", each.others_felt),
+    for name, answer in (("again at once", each.repeat_at_once),
+                         ("others felt it", each.others_felt),
                          ("again after moving", each.repeat_after_moving),
                          ("crack heard", each.crack_heard),
                          ("spark seen", each.spark_seen)):  # fmt: skip
@@ -104,8 +106,9 @@ def _items(incident: Incident) -> Iterator[list[str]]:
         owner = [meaning(w.OWNER, item.owner)] if item.owner else []
         owner += [f"last good {item.last_good.text}"] if item.last_good else []
         owner += [item.last_good_value] if item.last_good_value else []
-        yield [item_name(incident, item.id), "; ".join(supply), meanings(w.CONDITION, item.condition),
-               "; ".join(owner) or "not known"]  # fmt: skip
+        state = meanings(w.CONDITION, item.condition)
+        whose = "; ".join(owner) or "not known"
+        yield [item_name(incident, item.id), "; ".join(supply), state, whose]
 
 
 def _contacts(incident: Incident) -> Iterator[str]:
@@ -122,15 +125,13 @@ def _contacts(incident: Incident) -> Iterator[str]:
 
 def _place(a: Assessment) -> Iterator[str]:
     incident, s = a.incident, a.incident.surroundings
-    yield (
-        a.exposure.conditions.humidity_text[0].upper()
-        + a.exposure.conditions.humidity_text[1:]
-        + "."
-    )
-    yield f"Floor: {meaning(w.FLOOR, a.exposure.conditions.floor)}; footwear: " \
-          f"{meaning(w.FOOTWEAR, a.exposure.conditions.footwear)}."  # fmt: skip
-    for label, value in (("Air handling", s.air_handling and meaning(w.AIR_HANDLING, s.air_handling)),
-                         ("Garments", s.garments), ("Furniture and films", s.furniture),
+    found = a.exposure.conditions
+    yield f"Air: {found.humidity_text}."
+    shoes = meaning(w.FOOTWEAR, found.footwear)
+    yield f"Floor: {meaning(w.FLOOR, found.floor)}; footwear: {shoes}."
+    air = meaning(w.AIR_HANDLING, s.air_handling) if s.air_handling else None
+    for label, value in (("Air handling", air), ("Garments", s.garments),
+                         ("Furniture and films", s.furniture),
                          ("Cleaning product", s.cleaning_product),
                          ("Sensor", s.sensor)):  # fmt: skip
         if value:
@@ -176,7 +177,8 @@ def _scene(incident: Incident) -> Iterator[str]:
         parts = [f"from {step.from_role}" if step.from_role else "",
                  f"to {step.to_role}" if step.to_role else "",
                  step.at.text if step.at else "", step.where or "",
-                 "contaminated" if step.contaminated == "yes" else "", step.contained or ""]  # fmt: skip
+                 "contaminated" if step.contaminated == "yes" else "",
+                 step.contained or ""]  # fmt: skip
         yield f"Custody of {item_name(incident, step.item)}: {', '.join(p for p in parts if p)}."
 
 

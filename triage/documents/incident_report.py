@@ -148,7 +148,8 @@ def _closing(a: Assessment, s: Summary) -> list[dict[str, Any]]:
         {"title": "Cautions", "wide": False,
          "blocks": [{"kind": "list", "lines": list(s.cautions)}]},
         {"title": "Signatures", "wide": True,
-         "blocks": [{"kind": "signatures", "columns": _SIGNATURE_COLUMNS, "rows": _SIGNATURE_ROWS}]},
+         "blocks": [{"kind": "signatures", "columns": _SIGNATURE_COLUMNS,
+                     "rows": _SIGNATURE_ROWS}]},
         {"title": "Sources of the numbers", "wide": True,
          "blocks": [{"kind": "text", "class": "note", "text": _SOURCES_NOTE},
                     {"kind": "sources", "lines": list(source_lines(a))}]},
@@ -179,8 +180,10 @@ def _departures(a: Assessment) -> list[str]:
         f"Edition in force for {e.check.replace('_', ' ')}: {e.edition}" for e in file.editions
     ]
     lines += [f"Limit {t.limit} tightened to {t.value}" for t in file.tightened]
-    lines += [f"{r.cause.replace('_', ' ')} made {r.times} times as probable: {r.reason or 'no reason'}"
-              for r in file.policy.raised]  # fmt: skip
+    lines += [
+        f"{r.cause.replace('_', ' ')} made {r.times} times as probable: {r.reason or 'no reason'}"
+        for r in file.policy.raised
+    ]
     if file.policy.miss_ratio:
         lines.append(f"A missed fault weighs as {file.policy.miss_ratio} needless holds")
     for approval in file.approvals:

@@ -100,7 +100,8 @@ class Summary:
 def summarise(a: Assessment) -> Summary:
     """Word one assessment."""
     return Summary(
-        person_lines(a), review_lines(a), condition(a.incident), headline(a), item_lines(a), room_line(a),
+        person_lines(a), review_lines(a), condition(a.incident), headline(a), item_lines(a),
+        room_line(a),
         tuple(f"{item_name(a.incident, d.item)}: {d.text}" for d in a.evidence.defects),
         _happened(a), a.incident.statements, causes_lead(a), cause_lines(a), causes_note(a),
         estimate_lines(a), a.unknown, checks_by_performer(a),

@@ -38,8 +38,8 @@ CONDITION = (
 )
 """The condition before every order to cut power while somebody depends on it, or may."""
 _FIRST_FAULT = (
-    "Isolated supply with a first fault: the case is finished or brought to a stopping point, nothing "
-    "is plugged in, and the room is closed afterwards."
+    "Isolated supply with a first fault: the case is finished or brought to a stopping point, "
+    "nothing is plugged in, and the room is closed afterwards."
 )
 _NOT_RETURNED = {"hire": "the hire firm", "loan": "its lender", "trial": "the supplier",
                  "patient": "the patient", "staff": "its owner",

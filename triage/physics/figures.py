@@ -1,11 +1,11 @@
 """The figures of data/body.yaml, read once: sections, rows by id, and their citations."""
 
 from functools import cache
-from importlib.resources import files
 from typing import Any
 
 from triage.citation import Citation
 from triage.errors import BadTable
+from triage.tables import table
 
 
 @cache
@@ -74,8 +74,5 @@ def _cited(node: Any, name: str) -> list[tuple[str, dict[str, str]]]:
 
 @cache
 def _sections() -> dict[str, Any]:
-    from yaml import CSafeLoader, load
-
-    text = (files("triage") / "data" / "body.yaml").read_text("utf-8")
-    loaded: dict[str, Any] = load(text, CSafeLoader)
-    return loaded
+    found: dict[str, Any] = table("body")
+    return found
