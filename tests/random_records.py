@@ -11,8 +11,7 @@ from collections.abc import Iterator
 from typing import Any
 
 from triage import words as w
-from triage.check_table import check_kinds
-from triage.evidence import involved, required_checks
+from triage.assessment import assess
 from triage.fields import Field, table
 from triage.incident import (
     Contact,
@@ -27,6 +26,7 @@ from triage.incident import (
     Surroundings,
 )
 from triage.record import Record, from_plain
+from triage.site import no_site
 from triage.strict_yaml import Plain
 
 Tree = dict[str, Any]
@@ -283,15 +283,11 @@ _STORY_ACTIVITY = {
 
 
 def complete_checks(tree: Tree) -> list[Tree]:
-    """A valid pass of every mandatory check of every touched or linked item."""
-    incident = record(tree).incident
+    """A valid pass of every mandatory check that the program misses on any item."""
+    found = assess(record(tree | {"checks": []}), no_site())
     trees = {item["id"]: item for item in tree["items"]}
-    touched, linked = involved(incident)
-    found = []
-    for item in touched + linked:
-        for kind in required_checks(incident, item, incident.supply.kind):
-            found.append(passing_check(f"k{len(found)}", kind, trees[item.id]))
-    return found
+    named = [(kind, trees[each.item]) for each in found.items for kind in each.missing]
+    return [passing_check(f"k{n}", kind, item) for n, (kind, item) in enumerate(named)]
 
 
 def static_checks(tree: Tree, story: str) -> list[Tree]:
@@ -332,8 +328,3 @@ def _places(tree: Tree, part: type) -> Iterator[tuple[Tree, str, Field]]:
 
 
 _NOT_ANSWERS = frozenset({"how_confirmed", "reportable", "kind"})
-
-
-def known_checks() -> tuple[str, ...]:
-    """Check kinds without a passing example here; should stay empty for mandatory ones."""
-    return tuple(kind for kind in check_kinds() if kind not in PASSING)

@@ -52,6 +52,7 @@ def test_below_the_paschen_minimum_there_is_no_spark():
 
 
 def test_thin_air_breaks_over_a_longer_gap():
+    assert relative_density(-10, 101325) == pytest.approx(293.15 / 263.15)
     assert relative_density(20, 84e3) == pytest.approx(0.829, abs=1e-3)
     assert spark_gap(5000, relative_density(20, 84e3)) > spark_gap(5000)
 
@@ -74,6 +75,28 @@ def test_a_spark_of_five_centimetres_needs_more_than_a_body_holds():
 def test_outside_the_published_range_there_is_no_number(attempt):
     with pytest.raises(OutOfRange):
         attempt()
+
+
+# The ends of each published range still give a number; just outside there is none.
+@pytest.mark.parametrize(
+    ("formula", "inside", "outside"),
+    [
+        (relative_density, (-40, 60), (-40.1, 60.1)),
+        (breakdown_voltage, (2e-5, 0.1), (1.99e-5, 0.1001)),
+        (paschen_voltage, (1.12 / 101325, 850 / 101325), (1.11 / 101325, 851 / 101325)),
+        (spark_gap, (0, 6e4), (-1, 60001)),
+    ],
+)
+def test_a_range_ends_where_it_says(formula, inside, outside):
+    for value in inside:
+        formula(value)
+    for value in outside:
+        with pytest.raises(OutOfRange):
+            formula(value)
+
+
+def test_paschen_at_another_pressure_depends_on_the_product_alone():
+    assert paschen_voltage(1e-3, 50e3) == pytest.approx(paschen_voltage(0.5e-3, 100e3))
 
 
 @pytest.mark.parametrize(

@@ -76,6 +76,7 @@ def test_textbook_bodies():
     assert sphere(0.384) == pytest.approx(42.7e-12, rel=0.01)  # person, 1.85 m2 of skin
     assert plates(0.3375, 0.15) == pytest.approx(19.9e-12, rel=0.01)
     assert upright_cylinder(1.75, 0.14, 0.01) == pytest.approx(49.1e-12, rel=0.01)
+    # h / r = 12.5 at a height of 1 m: 2 pi eps0 h / ln(12.5 sqrt(5.75 / 9.25)).
     assert upright_cylinder(1.75, 0.14, 1.0) == pytest.approx(42.6e-12, rel=0.01)
 
 

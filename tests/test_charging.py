@@ -169,6 +169,9 @@ def test_a_lifted_foot_shows_tens_of_volts_on_a_good_path():
         for c in (None, lifted)
     )
     assert plain == pytest.approx(0.5, rel=0.05)
+    # The lifted foot is already in it: its peak is not raised a second time.
+    peak = moving(mover(resistances=path, contact=lifted, peak_factor=1.22), seconds=None).peak
+    assert peak.median == pytest.approx(with_foot)
     assert with_foot == pytest.approx(25.7, rel=0.05)
 
 

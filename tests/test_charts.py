@@ -5,7 +5,7 @@ import re
 from collections.abc import Callable
 from xml.etree import ElementTree
 
-import mock_report
+import mock_charts
 import pytest
 
 from triage.documents.charts import (
@@ -25,11 +25,11 @@ from triage.errors import InvalidValue
 
 SVG = "{http://www.w3.org/2000/svg}"
 CHARTS = {
-    "causes": mock_report.causes_chart,
-    "humidity": mock_report.humidity_chart,
-    "weights": mock_report.weights_chart,
-    "charge": mock_report.charge_chart,
-    "current": mock_report.current_chart,
+    "causes": mock_charts.causes_chart,
+    "humidity": mock_charts.humidity_chart,
+    "weights": mock_charts.weights_chart,
+    "charge": mock_charts.charge_chart,
+    "current": mock_charts.current_chart,
 }
 
 
@@ -102,7 +102,7 @@ def test_faults_and_other_causes_differ_by_shape() -> None:
 
 
 def test_probabilities_are_never_marked_nought_or_certain() -> None:
-    said = lettering(mock_report.causes_chart())
+    said = lettering(mock_charts.causes_chart())
 
     assert [each for each in said if each.endswith("%")] == [
         "1 %",

@@ -29,13 +29,22 @@ def test_an_energy_in_the_wrong_unit_is_refused(millijoules):
         checked_solvent_energy(millijoules * 1e-3)
 
 
-def test_an_energy_of_a_solvent_passes():
-    assert checked_solvent_energy(0.65e-3) == 0.65e-3
+@pytest.mark.parametrize("millijoules", [0.1, 0.65, 2.0])
+def test_an_energy_of_a_solvent_passes(millijoules):
+    assert checked_solvent_energy(millijoules * 1e-3) == millijoules * 1e-3
+
+
+@pytest.mark.parametrize("millijoules", [0.099, 2.01])
+def test_just_outside_the_range_of_solvents_an_energy_is_refused(millijoules):
+    with pytest.raises(OutOfRange, match="covers 0.0001 to 0.002 J"):
+        checked_solvent_energy(millijoules * 1e-3)
 
 
 def test_oxygen_lowers_the_energy_from_air_to_its_own_value():
     assert with_oxygen(0.19e-3, 0.0012e-3, 0.21) == pytest.approx(0.19e-3)
     assert with_oxygen(0.19e-3, 0.0012e-3, 1.0) == pytest.approx(0.0012e-3)
+    # Halfway between 21 and 100 % the energy is the geometric mean of the two.
+    assert with_oxygen(4e-4, 1e-6, 0.605) == pytest.approx(2e-5)
 
 
 @given(st.floats(0.21, 1), st.floats(0, 0.5))
@@ -72,6 +81,7 @@ def test_a_shock_beside_fuel_or_oxygen_is_a_priority_and_unknown_counts(
     "attempt",
     [
         lambda: with_oxygen(1e-4, 1e-6, 0.1),
+        lambda: with_oxygen(1e-4, 1e-6, 1.01),
         lambda: with_oxygen(1e-6, 1e-4, 0.5),
         lambda: can_ignite(Estimate.exact(1e-3, "J"), 0.0),
     ],

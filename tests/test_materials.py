@@ -1,6 +1,7 @@
 """The tables of materials, and the model they make, against published voltages."""
 
 from copy import deepcopy
+from dataclasses import replace
 from importlib.resources import files
 from pathlib import Path
 
@@ -78,8 +79,6 @@ def test_a_charged_act_gives_a_felt_shock_more_often_than_a_random_touch():
 
 # Dutch rule, chapters 6-7: at most 1e10 ohm to earth keeps a walker below 2 kV.
 def test_ten_gigaohms_to_earth_keep_most_walkers_below_two_kilovolts():
-    from dataclasses import replace
-
     walker = M.walker("carpet", "ordinary", Humidity(0.25))
     earthed = replace(walker, resistances=(Estimate.exact(1e10, "ohm"),))
     voltage = moving(earthed, seconds=None).peak.known(["model_doubt"])
@@ -142,6 +141,41 @@ def test_antistatic_garments_hardly_lower_the_charge():
     # Kimura and others 2018: almost all above 3 kV including antistatic ones.
     plain = M.act_charge("garment_off", Humidity(0.3), surface="synthetic").median
     assert M.act_charge("garment_off", Humidity(0.3), surface="antistatic").median > 0.7 * plain
+
+
+# Talebzadeh and others 2016: ESD shoes and floor divide by 2 to 7 (chair), 2 to 5 (garment).
+@pytest.mark.parametrize(("act", "low", "high"), [("rise", 2, 7), ("garment_off", 2, 5)])
+def test_earthing_shoes_and_floor_divide_an_act_by_the_published_factor(act, low, high):
+    plain, earthed = (M.act_charge(a, Humidity(0.3)).median for a in (act, f"{act}_earthing"))
+    assert low <= plain / earthed <= high
+
+
+# Duban 2003: seat materials differ 10 to 20 fold.
+def test_an_antistatic_seat_divides_rising_by_the_published_factor():
+    plain = M.act_charge("rise", Humidity(0.3)).median
+    assert 10 <= plain / M.act_charge("rise", Humidity(0.3), surface="antistatic").median <= 20
+
+
+@pytest.mark.parametrize("share", [0.0, 0.3])
+@pytest.mark.parametrize("floor", ["antistatic", "vinyl", "unknown"])
+def test_measuring_the_floor_never_raises_what_it_adds_to_the_variance(floor, share):
+    def added(factor: float) -> float:
+        walker = M.walker(floor, "leather", Humidity(0.3))
+        ground, shoe = walker.resistances
+        spread = {"floor_resistance": factor * ground.loadings["floor_resistance"]}
+        measured = Estimate.lognormal(ground.median, spread, "ohm")
+        voltage = moving(replace(walker, resistances=(measured, shoe)), seconds=None).voltage
+        return voltage.contributions().get("floor_resistance", 0.0) * voltage.variance_log
+
+    assert added(share) <= added(1.0) + 1e-9
+
+
+def test_a_measured_system_resistance_replaces_floor_and_shoe():
+    walker = M.walker("vinyl", "ordinary", Humidity(0.25))
+    read = Estimate.lognormal(2e8, {"floor_resistance": 0.2}, "ohm")
+    voltage = moving(replace(walker, resistances=(read,)), seconds=None).voltage
+    assert "footwear_resistance" not in voltage.contributions()
+    assert voltage.quantile(0.99) < 200
 
 
 def test_a_person_and_a_cart_do_not_share_the_doubt_about_their_capacitance():

@@ -14,7 +14,8 @@ import page
 import pikepdf
 import pytest
 from fontTools.ttLib import TTFont
-from mock_report import causes_chart, context
+from mock_charts import causes_chart
+from mock_report import context
 from pypdf import PdfReader
 
 from triage import typeset

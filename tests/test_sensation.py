@@ -126,6 +126,40 @@ def test_the_voltage_given_that_it_was_felt_agrees_with_monte_carlo():
     assert body.median == pytest.approx(np.median(drawn), rel=0.01)
 
 
+@pytest.fixture(scope="module")
+def drawn():
+    """Voltage of 400,000 people, their charge, and how sensitive each is, in ln charge."""
+    z = np.random.default_rng(11).standard_normal((3, 400_000))
+    v, c = 1000 * 2.5 ** z[0], 130e-12 * 1.35 ** z[1]
+    return v, c * v, z[2]
+
+
+def charged() -> tuple[Estimate, Estimate]:
+    """Voltage and charge of the same people as estimates."""
+    voltage = Estimate.lognormal(1000, {"v": log(2.5)}, "V")
+    return voltage, voltage.times(Estimate.lognormal(130e-12, {"c": log(1.35)}, "F"), "C")
+
+
+@pytest.mark.parametrize("p", [0.05, 0.5, 0.95])
+def test_the_voltage_given_that_it_was_not_felt_agrees_with_monte_carlo(drawn, p):
+    v, q, z = drawn
+    voltage, charge = charged()
+    threshold = M.threshold("felt").known(["felt_threshold"])
+    found = after_not_noticing(voltage, charge, threshold)
+    assert found.quantile(p) == pytest.approx(np.quantile(v[q < 0.2e-6 * 1.568**z], p), rel=0.02)
+
+
+@pytest.mark.parametrize("p", [0.05, 0.5, 0.95])
+@pytest.mark.parametrize("word", ["nothing", "prick", "hand_pain"])
+def test_the_voltage_given_the_words_agrees_with_monte_carlo(drawn, word, p):
+    v, q, z = drawn
+    low, high = limits().between(word)
+    moved = q * np.exp(-0.6 * z)
+    chosen = v[(moved > low) & (moved < (high or np.inf))]
+    found = after_words(*charged(), (low, high), 0.6)
+    assert found.quantile(p) == pytest.approx(np.quantile(chosen, p), rel=0.03)
+
+
 def test_stronger_words_mean_a_higher_voltage():
     voltage = Estimate.lognormal(2000, {"v": log(2.5)}, "V")
     charge = voltage.times(Estimate.lognormal(130e-12, {"c": log(1.35)}, "F"), "C")

@@ -56,6 +56,8 @@ def test_words_follow_each_other_without_a_gap():
     assert bounds[0][0] == 0
     assert bounds[-1][1] is None
     assert all(a[1] == b[0] for a, b in zip(bounds, bounds[1:], strict=False))
+    assert LIMITS.words["prick"].charge == pytest.approx(0.27e-6)
+    assert LIMITS.words["prick"].voltage == 3000
     # Japanese guidance ladder: needle prick at 3 kV on 90 pF, 0.27 uC.
     low, high = LIMITS.between("prick")
     assert low < 0.27e-6 < high
@@ -74,6 +76,8 @@ def test_an_unknown_word_is_refused_with_the_words_there_are():
         (("fuels", "ethanol", "citation"), None),
         (("immunity", "ed3_2007", "air_kv"), ["many"]),
         (("room_humidity", "ashrae_170", "high_pct"), 10),
+        (("room_humidity", "ashrae_170", "low_pct"), -1),
+        (("room_humidity", "ashrae_170", "high_pct"), 101),
         (("words", "ladder", "prick", "kv"), 30),
         (("words",), None),
     ],

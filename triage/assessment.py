@@ -11,7 +11,7 @@ from triage.diagnosis import CONFLICT_NAMED, Posterior, diagnose, does_not_fit, 
 from triage.diagnosis import counted as findings_counted
 from triage.disposition import Gate, Inputs, ItemDisposition, Level, decide
 from triage.errors import InvalidValue
-from triage.evidence import Evidence, Observed, gather
+from triage.evidence import Evidence, gather
 from triage.exposure import Exposure, estimate_exposure
 from triage.incident import SCHEMA, Incident
 from triage.knowledge import knowledge
@@ -21,6 +21,7 @@ from triage.red_flags import Flag, raise_flags
 from triage.sensitivity import Sensitivity, ranges
 from triage.site import Site
 from triage.tables import knowledge_digest
+from triage.told import Observed
 from triage.validity import CheckVerdict, judge_checks
 
 
@@ -156,7 +157,7 @@ def _caution_words(given: Inputs, gate: Gate) -> frozenset[str]:
 
 def _unknown(given: Inputs) -> tuple[str, ...]:
     """What is not known and would matter, in words."""
-    k, observed = knowledge(), given.evidence.observed
+    k, observed = knowledge(), given.evidence.answered
     found = [
         row.name for row in k.findings.values()
         if not row.measured and row.id not in observed and row.deciding

@@ -6,7 +6,6 @@ UTF-8 JSON with sorted keys and no blanks, every scalar the text as typed.
 
 import hashlib
 import json
-import secrets
 from typing import Any
 
 from triage.errors import InvalidValue
@@ -56,6 +55,8 @@ def digest(data: bytes) -> str:
 
 def new_record_id() -> str:
     """A random 128-bit id, 32 hexadecimal digits; written into a record once."""
+    import secrets
+
     return secrets.token_hex(16)
 
 

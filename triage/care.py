@@ -6,8 +6,9 @@ from functools import cache
 
 from triage.citation import Citation
 from triage.errors import BadTable
-from triage.evidence import Evidence, is_powered
+from triage.evidence import Evidence
 from triage.incident import Incident
+from triage.involvement import is_powered
 from triage.tables import citation, table
 
 URGENCY = ("route", "same_day", "now")

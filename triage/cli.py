@@ -124,10 +124,11 @@ def fields() -> None:
 
 def _site(path: Path | None) -> "Site":
     from triage.site import load, no_site
-    from triage.site_check import site_faults
 
     if path is None:
         return no_site()
+    from triage.site_check import site_faults
+
     found = load(path)
     faults = site_faults(found)
     if faults:

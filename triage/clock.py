@@ -8,9 +8,12 @@ import re
 from dataclasses import dataclass
 from datetime import UTC, date, datetime, timedelta, timezone
 from functools import cache
-from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
+from typing import TYPE_CHECKING
 
 from triage.errors import InvalidValue
+
+if TYPE_CHECKING:
+    from zoneinfo import ZoneInfo
 
 _PARTS = {"night": (0, 6), "morning": (6, 12), "afternoon": (12, 18), "evening": (18, 24)}
 # Years 1900 to 2199 only: at the ends of the calendar an interval in UTC does not exist.
@@ -71,12 +74,14 @@ def _refuse_clock_change(text: str, local: datetime) -> None:
 
 
 @cache
-def find_zone(name: str) -> ZoneInfo:
+def find_zone(name: str) -> "ZoneInfo":
     """The time zone of an IANA name such as "Europe/Vienna".
 
     Raises:
         InvalidValue: no such zone on this computer.
     """
+    from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
+
     try:
         return ZoneInfo(name)
     except (ZoneInfoNotFoundError, ValueError, OSError):

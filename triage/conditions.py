@@ -7,8 +7,8 @@ from dataclasses import dataclass
 
 from triage.clock import hours_between
 from triage.errors import OutOfRange
-from triage.evidence import OBJECTS
 from triage.incident import Incident, Item
+from triage.involvement import OBJECTS
 from triage.physics.humidity import Humidity, transfer_doubt, transferred
 from triage.quantity import parse
 from triage.site import Site

@@ -9,10 +9,11 @@ import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
-from triage.evidence import Evidence, Observed
+from triage.evidence import Evidence
 from triage.exposure import Exposure
 from triage.knowledge import Knowledge, knowledge
 from triage.site import Site
+from triage.told import Observed
 
 RESIDUAL = "none_of_these"
 """The class that takes what the list does not hold; never shown as a ranked cause."""

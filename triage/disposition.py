@@ -11,13 +11,15 @@ from enum import IntEnum
 
 from triage.check_table import cannot_be_released, check_kinds
 from triage.diagnosis import CONFLICT_BLOCKS, RESIDUAL, Posterior
-from triage.evidence import FIXED, Evidence, Observed, required_checks
+from triage.evidence import Defect, Evidence
 from triage.exposure import Exposure
 from triage.incident import Incident, Item
+from triage.involvement import FIXED, required_checks
 from triage.knowledge import Cause, Finding, knowledge
 from triage.red_flags import Flag
 from triage.release_gate import deciding_posterior, release_threshold, upper_mains
 from triage.site import Site
+from triage.told import Observed
 from triage.validity import CheckVerdict, covers
 
 
@@ -31,6 +33,7 @@ class Level(IntEnum):
 
 
 _FLOOR = {"hold": Level.HOLD, "withdraw": Level.WITHDRAW, "isolate": Level.ISOLATE}
+_STAYS = FIXED | {"outlet", "circuit", None}
 _OF_THE_SUPPLY = frozenset({"outlet_test", "isolated_line_voltages", "isolated_alarm_test"})
 _LINKED_NEEDS = _OF_THE_SUPPLY | {"visual_inspection", "earth_continuity", "insulation_resistance"}
 
@@ -157,7 +160,9 @@ def _factors(given: Inputs) -> dict[str, float]:
 def _shut_by(given: Inputs) -> Iterator[str]:
     if not given.evidence.touched:
         yield "no item on record"
-    for item in given.evidence.touched:
+    if any(not contact.items for contact in given.incident.contacts):
+        yield "not known: what was touched"
+    for item in given.evidence.touched + given.evidence.linked:
         yield from _item_shuts(item, given)
     yield from _answers_shut(given)
     yield from (f"red flag: {f.flag.name}" for f in given.flags if not f.cleared)
@@ -200,7 +205,9 @@ def _answers_shut(given: Inputs) -> Iterator[str]:
         if finding.id == "driven" or (finding.id == "monitor_alarm" and given.supply == "earthed"):
             continue
         seen = observed.get(finding.id)
-        if seen is None:
+        if seen is None and finding.id in given.evidence.answered:
+            yield f"not reassuring: {finding.name}, something kept acting"
+        elif seen is None:
             yield f"not known: {finding.name}"
         elif finding.reassuring and not _acceptable(finding, seen.state, given):
             yield f"not reassuring: {finding.name}, {seen.state.replace('_', ' ')}"
@@ -266,6 +273,8 @@ def _decide_item(item: Item, given: Inputs, gate: Gate) -> ItemDisposition:
         )  # fmt: skip
     change = [f.missing for f in given.flags if item.id in f.open_items]
     change += [f"valid pass: {check_kinds()[each].name}" for each in missing]
+    if item.kind is None:
+        change.insert(0, "say what it is; its checks follow from that")
     return ItemDisposition(item.id, level, reasons, tuple(dict.fromkeys(change)), missing)
 
 
@@ -275,11 +284,21 @@ def _floors(item: Item, given: Inputs) -> Iterator[tuple[Level, str]]:
         if item.id in flag.open_items:
             yield _FLOOR[flag.flag.floor], f"{flag.flag.name} ({flag.because})"
     for defect in given.evidence.defects:
-        if defect.item == item.id or (defect.item is None and item in given.evidence.touched):
+        if _shares(defect, item, given):
             yield _defect_floor(defect.check, item), defect.text
     for each in given.evidence.verdicts:
         if each.state == "invalid_fail" and each.kind and covers(each.check, item, given.incident):
             yield Level.HOLD, f"{each.kind.name} failed and is repeated: {'; '.join(each.reasons)}"
+
+
+def _shares(defect: Defect, item: Item, given: Inputs) -> bool:
+    """Whether a defect is an item's own, its tested cord's, or of no named item."""
+    if defect.item is None:
+        return item in given.evidence.touched
+    of_cord = item.kind == "cord" and defect.source is not None
+    return defect.item == item.id or bool(
+        of_cord and defect.source and covers(defect.source, item, given.incident)
+    )
 
 
 def _defect_floor(check: str, item: Item) -> Level:
@@ -297,9 +316,9 @@ def _decide_room(given: Inputs, items: tuple[ItemDisposition, ...], gate: Gate) 
     floors = [(_FLOOR[f.flag.floor], f"{f.flag.name} ({f.because})")
               for f in given.flags if "" in f.open_items]  # fmt: skip
     for each in items:
-        fixed = kinds[each.item] in FIXED or kinds[each.item] in ("outlet", "circuit")
+        fixed = kinds[each.item] in _STAYS  # of an unknown kind nobody knows whether it moves
         if fixed and each.level > Level.STATIC_CONTROLS:
-            floors.append((each.level, f"{each.item} belongs to the room"))
+            floors.append((each.level, f"{each.item} is part of it"))
         elif each.level == Level.ISOLATE:
             floors.append((Level.ISOLATE, f"{each.item}: its circuit"))
     if not given.incident.items:

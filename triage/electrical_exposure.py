@@ -23,6 +23,7 @@ ELECTRICAL_CAUSES = ("open_earth", "insulation_fault", "isolated_first_fault",
                      "moisture")  # fmt: skip
 """Mains causes, each with a model of its touch current."""
 _ORDER = 24
+_UNITS = {"capacitance": "F", "resistance": "ohm", "voltage": "V", "current": "A", "share": ""}
 _CURVES = ("touch", "sensitive")
 
 
@@ -39,6 +40,7 @@ class ElectricalStory:
         insulation: shown by the monitor [ohm], None if not known or void.
         metal_voltage: measured between the two metals, loaded [V].
         touch_current: measured at the item, valid [A].
+        isolated: the contact was on an isolated supply: one line drives what the system leaks.
     """
 
     voltage: float
@@ -50,15 +52,26 @@ class ElectricalStory:
     insulation: float | None = None
     metal_voltage: float | None = None
     touch_current: float | None = None
+    isolated: bool = False
 
 
 @dataclass(frozen=True, slots=True)
 class ElectricalExposure:
-    """One mains cause: current through the person, P(felt), zone of the worst credible case."""
+    """One mains cause: the current through the person and the chance that it is felt."""
 
     current: Estimate
-    felt: Probability
-    zone: str
+    chance: float
+
+    @property
+    def felt(self) -> Probability:
+        """The chance with P(felt) at the 5 % and 95 % points of the current."""
+        low, high = (_chance(math.log(each)) for each in self.current.interval())
+        return Probability(self.chance, low, high, self.current.basis)
+
+    @property
+    def zone(self) -> str:
+        """Zone of the worst credible case: high current, unknown duration and path."""
+        return zone(self.current.quantile(0.95), None, None)
 
 
 @lru_cache(maxsize=4096)
@@ -69,8 +82,8 @@ def electrical_exposure(cause: str, told: ElectricalStory) -> ElectricalExposure
         cause: one of `ELECTRICAL_CAUSES`.
         told: the circumstances.
     """
-    current = _CURRENTS[cause](told)
-    return ElectricalExposure(current, _felt(current), zone(current.quantile(0.95), None, None))
+    current = (_ISOLATED if told.isolated else _CURRENTS)[cause](told)
+    return ElectricalExposure(current, max(current.probit(m, s) for m, s in _curves()))
 
 
 def ceiling(told: ElectricalStory, void: tuple[str, ...]) -> Ceiling | None:
@@ -89,37 +102,41 @@ def ceiling(told: ElectricalStory, void: tuple[str, ...]) -> Ceiling | None:
     return None
 
 
-def _felt(current: Estimate) -> Probability:
-    """The curve that feels more easily decides whether it could be felt.
+@cache
+def _curves() -> tuple[tuple[float, float], ...]:
+    """Median [A] and spread of the curves; the one that feels more easily decides."""
+    return tuple(threshold(curve)[:2] for curve in _CURVES)
 
-    The interval is P(felt) at the 5 % and 95 % points of the current.
-    """
-    low, high = current.interval()
-    found = []
-    for curve in _CURVES:
-        median, spread, _ = threshold(curve)
-        at = [normal_cdf(math.log(each / median) / spread) for each in (low, high)]
-        found.append(Probability(current.probit(median, spread), at[0], at[1], current.basis))
-    return max(found, key=lambda p: p.value)
+
+def _chance(log_current: float) -> float:
+    """P(felt) at one current, ln A."""
+    return max(normal_cdf((log_current - math.log(m)) / s) for m, s in _curves())
 
 
 @cache
-def _assumed(name: str) -> Estimate:
-    """An assumed source of current as an estimate over the named source `assumed_source`."""
+def _assumed(name: str, source: str = "assumed_source") -> Estimate:
+    """An assumed row as an estimate over a named source of doubt."""
     row = next((each for each in table("touch_sources")["sources"] if each["id"] == name), None)
     if row is None:
         raise BadTable(f"data/touch_sources.yaml has no row '{name}'")
-    unit = {"capacitance": "F", "resistance": "ohm", "voltage": "V", "current": "A"}[row["kind"]]
-    basis = {"assumed_source": Basis(row["name"], "default", "", citation(row, name))}
+    unit = {"capacitance": "F", "resistance": "ohm", "voltage": "V", "current": "A", "share": ""}[
+        row["kind"]
+    ]
+    basis = {source: Basis(row["name"], "default", "", citation(row, name))}
     if "between" in row:
-        low, high = (parse(text, row["kind"]).value for text in row["between"])
+        low, high = (_number(text, row["kind"]) for text in row["between"])
         span = math.log(high / low)
-        score = Estimate.lognormal(1.0, {"assumed_source": 1.0}, "", basis)  # ln value = z
+        score = Estimate.lognormal(1.0, {source: 1.0}, "", basis)  # ln value = z
         return through(
             lambda z: math.log(low) + span * normal_cdf(z), score, unit=unit, order=_ORDER
         )
     median = parse(row["median"], row["kind"]).value
-    return Estimate.lognormal(median, {"assumed_source": float(row["spread"])}, unit, basis)
+    return Estimate.lognormal(median, {source: float(row["spread"])}, unit, basis)
+
+
+def _number(text: object, kind: str) -> float:
+    """A bound of a row in SI; a share is a bare number."""
+    return float(str(text)) if kind == "share" else parse(str(text), kind).value
 
 
 def assumed_names() -> tuple[tuple[str, str], ...]:
@@ -238,6 +255,11 @@ def _isolated_line(told: ElectricalStory) -> Estimate:
     return _through_body(hazard, told, law)
 
 
+def _isolated_open_earth(told: ElectricalStory) -> Estimate:
+    """An open earth on an isolated supply: a share of what an earthed supply would drive."""
+    return _open_earth(told).times(_assumed("isolated_share", "isolated_share"), "A")
+
+
 _CURRENTS: dict[str, Callable[[ElectricalStory], Estimate]] = {
     "open_earth": _open_earth,
     "insulation_fault": _insulation_fault,
@@ -248,6 +270,16 @@ _CURRENTS: dict[str, Callable[[ElectricalStory], Estimate]] = {
     "earth_difference": _earth_difference,
     "moisture": _moisture,
 }
+
+
+_ISOLATED = _CURRENTS | {
+    "open_earth": _isolated_open_earth,
+    "insulation_fault": _isolated_line,
+    "outlet_wiring": _isolated_line,
+    "live_cord": _isolated_line,
+    "moisture": _isolated_line,
+}
+"""On an isolated supply one bare line or bad case drives only what the rest of the system leaks."""
 
 
 def worst_current(voltage: float) -> float:

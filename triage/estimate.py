@@ -9,7 +9,7 @@ formula has resolved; what is left is lognormal, with one loading (d ln value / 
 Loadings never point along an axis. Products and powers are exact; `through` resolves as many
 directions as its formula has arguments, whatever the number of names.
 
-Known zero, "less than" and unknown are never estimates: see `reading.py`.
+Known zero, "less than" and unknown are never estimates: see `bounds.py`.
 """
 
 from bisect import bisect
@@ -272,10 +272,9 @@ class Estimate:
     def _slopes(self) -> dict[str, float]:
         """Covariance of ln value with each named source."""
         slopes = dict(self.loadings)
-        for axis, positions in zip(self.axes, self.coordinates, strict=True):
+        for name, positions in self.scores.items():
             along = sum([w * x * z for (w, x), z in zip(self.nodes, positions, strict=True)])
-            for name, component in axis:
-                slopes[name] = slopes.get(name, 0.0) + along * component
+            slopes[name] = slopes.get(name, 0.0) + along
         return slopes
 
 

@@ -20,9 +20,9 @@ from triage.electrical_exposure import (
     electrical_exposure,
 )
 from triage.errors import InvalidValue
-from triage.evidence import involved, speaks_about
 from triage.fields import table
 from triage.incident import Incident, Item, Supply
+from triage.involvement import involved, speaks_about
 from triage.knowledge import Knowledge, knowledge
 from triage.physics.humidity import Humidity
 from triage.site import Site
@@ -52,7 +52,6 @@ class CauseExposure:
         cause: its id.
         static: voltages and charges, for a static cause with a model.
         electrical: current, for a mains cause.
-        felt: P(felt) here, None where there is no model or an input was out of range.
         factor: weight in the ranking, P(felt) here over P(felt) under reference conditions,
             within the bounds of the table; 1 without a model.
         unknown: why there is no estimate.
@@ -61,9 +60,15 @@ class CauseExposure:
     cause: str
     static: StaticExposure | None
     electrical: ElectricalExposure | None
-    felt: Probability | None
     factor: float
     unknown: str = ""
+
+    @property
+    def felt(self) -> Probability | None:
+        """P(felt) here; None where there is no model or an input was out of range."""
+        if self.static is not None:
+            return self.static.felt
+        return self.electrical.felt if self.electrical is not None else None
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,7 +112,7 @@ def estimate_exposure(
     void = tuple(_void(incident, site)) if monitored else ()
     causes |= {name: _electrical(name, read, bool(void), found, k) for name in ELECTRICAL_CAUSES}
     for cause in k.causes:
-        causes.setdefault(cause, CauseExposure(cause, None, None, None, 1.0))
+        causes.setdefault(cause, CauseExposure(cause, None, None, 1.0))
     return Exposure(
         found, causes, ceiling(read, void), _plausible(causes, k),
         tuple(_notes(found, void)),
@@ -155,8 +160,8 @@ def _static(
         usual = replace(reference, object_kind=found.object_kind)
         there = static_exposure(story(cause, usual, Measured(), reference)).felt.value
     except InvalidValue as error:
-        return CauseExposure(cause, None, None, None, 1.0, str(error))
-    return CauseExposure(cause, shown, None, shown.felt, _clipped(weighed, there, k.static_factor))
+        return CauseExposure(cause, None, None, 1.0, str(error))
+    return CauseExposure(cause, shown, None, _clipped(weighed, there, k.static_factor))
 
 
 def _electrical(
@@ -168,21 +173,20 @@ def _electrical(
     the larger of the two, so that a doubt about the reading never speaks for static.
     """
     if cause.startswith("isolated_") and found.isolated is False:
-        return CauseExposure(cause, None, None, None, 1.0, "the supply is not isolated")
+        return CauseExposure(cause, None, None, 1.0, "the supply is not isolated")
     told = replace(read, hazard_current=None, insulation=None) if void else read
     try:
         here = electrical_exposure(cause, told)
         weighed = [
-            electrical_exposure(cause, replace(each, moisture=each.moisture or "dry")).felt.value
+            electrical_exposure(cause, replace(each, moisture=each.moisture or "dry")).chance
             for each in ((told, read) if void else (told,))
         ]
+        # The priors of these causes were judged for an earthed supply and a direct return path.
         usual = ElectricalStory(told.voltage, told.frequency, told.medical, "dry")
-        there = electrical_exposure(cause, usual).felt.value
+        there = electrical_exposure(cause, usual).chance
     except InvalidValue as error:
-        return CauseExposure(cause, None, None, None, 1.0, str(error))
-    return CauseExposure(
-        cause, None, here, here.felt, _clipped(max(weighed), there, k.mains_factor)
-    )
+        return CauseExposure(cause, None, None, 1.0, str(error))
+    return CauseExposure(cause, None, here, _clipped(max(weighed), there, k.mains_factor))
 
 
 def _clipped(here: float, there: float, bounds: tuple[float, float]) -> float:
@@ -210,6 +214,7 @@ def _electrical_story(
         # With the earth closed the reading says nothing about the same item with its earth open.
         _valid_reading(tuple(v for v in verdicts if "earth_open" in v.check.state),
                        "touch_current"),
+        found.isolated is True and all(item.supply != "earthed" for item in touched),
     )  # fmt: skip
 
 
@@ -273,7 +278,7 @@ def _valid_reading(verdicts: tuple[CheckVerdict, ...], kind: str) -> float | Non
 
 
 def _plausible(causes: Mapping[str, CauseExposure], k: Knowledge) -> bool | None:
-    felt = [e.felt.value for name in STATIC_CAUSES if (e := causes[name]).felt is not None]
+    felt = [s.felt.value for name in STATIC_CAUSES if (s := causes[name].static) is not None]
     return max(felt) >= k.plausible_above if felt else None
 
 

@@ -74,13 +74,31 @@ def _entry(description: Field) -> Any:
     return field(default=empty, metadata={"field": description})
 
 
+class Part:
+    """Base of every part of a record: built from keywords, never changed afterwards.
+
+    A plain base instead of generated methods: making those for every part costs a third of the
+    start-up.
+    """
+
+    __slots__ = ()
+
+    def __init__(self, **values: Any):
+        """Take the values given; what is not given is not known."""
+        for each in dataclasses.fields(self):  # type: ignore[arg-type]
+            object.__setattr__(self, each.name, values.pop(each.name, each.default))
+        if values:
+            raise TypeError(f"no field {', '.join(values)} in {type(self).__name__}")
+
+    def __setattr__(self, name: str, value: object) -> None:
+        """Refuse every change."""
+        raise dataclasses.FrozenInstanceError(f"{name} of a record cannot be changed")
+
+
 @dataclass_transform(frozen_default=True, kw_only_default=True)
 def record_part(of: type[T]) -> type[T]:
-    """Make a class of fields a frozen part of a record.
-
-    Comparison and repr are left out: making them for every part costs a third of the start-up.
-    """
-    return dataclass(frozen=True, slots=True, kw_only=True, eq=False, repr=False)(of)
+    """Make a class of fields a part of a record; it derives from `Part`."""
+    return dataclass(init=False, repr=False, eq=False, slots=True, kw_only=True)(of)
 
 
 def text(help: str, most: int = 2000) -> Any:

@@ -8,6 +8,7 @@ from triage.clock import Moment
 from triage.fields import (
     NO_ADVERSE,
     YES_ADVERSE,
+    Part,
     amount,
     count,
     ident,
@@ -29,7 +30,7 @@ SCHEMA = "1"
 
 
 @record_part
-class CrossReference:
+class CrossReference(Part):
     """A number under which somebody else keeps this incident."""
 
     kind: str | None = word("Whose number it is.", w.REFERENCE_KIND)
@@ -37,7 +38,7 @@ class CrossReference:
 
 
 @record_part
-class Place:
+class Place(Part):
     """Where it happened."""
 
     room: str | None = ident("Room id of the site file; it survives renaming.")
@@ -48,7 +49,7 @@ class Place:
 
 
 @record_part
-class Person:
+class Person(Part):
     """One affected person: role only, never a name or a patient identifier."""
 
     id: str = ident("Short id, such as p1.", required=True)
@@ -62,7 +63,7 @@ class Person:
 
 
 @record_part
-class Statement:
+class Statement(Part):
     """One witness's own words, and apart from them what somebody mapped them to."""
 
     id: str = ident("Short id, such as s1.", required=True)
@@ -87,7 +88,7 @@ class Statement:
 
 
 @record_part
-class Photo:
+class Photo(Part):
     """One photograph by its digest."""
 
     what: str | None = text("What it shows.", 200)
@@ -96,7 +97,7 @@ class Photo:
 
 
 @record_part
-class HandOver:
+class HandOver(Part):
     """One step of custody of an item."""
 
     item: str | None = reference("Which item.", "items")
@@ -109,13 +110,13 @@ class HandOver:
 
 
 @record_part
-class Scene:
+class Scene(Part):
     """What the scene was like, what was changed in it, and who depends on it."""
 
     live_contact: str | None = yes_no("Is somebody still in contact with it?", YES_ADVERSE)
     dependence: str | None = word("Does anybody depend on it now?", w.DEPENDENCE)
     replacement: str | None = yes_no("Is a replacement at hand?")
-    patient_connected: str | None = yes_no("Was a patient connected to it?")
+    patient_connected: str | None = yes_no("Was a patient connected to it?", YES_ADVERSE)
     heart_conductor: str | None = yes_no(
         "Has a patient there a conductor to the heart (pacing wire, filled line)?", YES_ADVERSE
     )
@@ -130,7 +131,7 @@ class Scene:
 
 
 @record_part
-class Item:
+class Item(Part):
     """One thing involved: device, cord, outlet, circuit, furniture, instrument."""
 
     id: str = ident("Short id, such as pump or outlet3.", required=True)
@@ -164,7 +165,7 @@ class Item:
 
 
 @record_part
-class Contact:
+class Contact(Part):
     """One person touching one or two items."""
 
     id: str = ident("Short id, such as c1.", required=True)
@@ -178,7 +179,7 @@ class Contact:
 
 
 @record_part
-class Event:
+class Event(Part):
     """What happened in the seconds before."""
 
     at: Moment | None = time("When.")
@@ -201,7 +202,7 @@ class Event:
 
 
 @record_part
-class Surroundings:
+class Surroundings(Part):
     """Air, floor and clothing at the place and time."""
 
     humidity: Quantity | None = amount("Relative humidity.", "relative_humidity",
@@ -227,7 +228,7 @@ class Surroundings:
 
 
 @record_part
-class Supply:
+class Supply(Part):
     """The supply of the place and its monitor."""
 
     kind: str | None = word("Earthed or isolated.", w.SUPPLY)
@@ -253,7 +254,7 @@ class Supply:
 
 
 @record_part
-class Check:
+class Check(Part):
     """One check of one item."""
 
     id: str = ident("Short id, such as k1.", required=True)
@@ -280,7 +281,7 @@ class Check:
 
 
 @record_part
-class Action:
+class Action(Part):
     """One action with an owner."""
 
     what: str | None = text("What is to be done.", 300)
@@ -292,7 +293,7 @@ class Action:
 
 
 @record_part
-class Notification:
+class Notification(Part):
     """Somebody told."""
 
     to: str | None = text("Who was told (role or authority).", 120)
@@ -301,7 +302,7 @@ class Notification:
 
 
 @record_part
-class LookBack:
+class LookBack(Part):
     """An answer to a look-back question after a confirmed defect."""
 
     question: str | None = ident("Which question.")
@@ -311,7 +312,7 @@ class LookBack:
 
 
 @record_part
-class Outcome:
+class Outcome(Part):
     """How the case ended."""
 
     confirmed_cause: str | None = ident("Cause, by its id in the table of causes.")
@@ -330,7 +331,7 @@ class Outcome:
 
 
 @record_part
-class Entry:
+class Entry(Part):
     """Who added what to the record, and when."""
 
     at: Moment | None = time("When.")
@@ -339,7 +340,7 @@ class Entry:
 
 
 @record_part
-class Incident:
+class Incident(Part):
     """One complaint with its circumstances, as recorded."""
 
     schema: str = ident("Version of this form of record; always 1.", required=True)

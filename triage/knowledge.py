@@ -13,7 +13,8 @@ from triage.tables import citation, table
 MECHANISMS = ("static", "mains", "other")
 FLOORS = ("hold", "withdraw", "isolate")
 FACTS = frozenset({
-    "live_contact", "hot", "two_driven_signs", "breach", "wet_item", "damaged", "altered",
+    "live_contact", "hot", "two_driven_signs", "breach", "wet_item", "wet_contact",
+    "patient_connected", "damaged", "altered",
     "scene_changed", "heart_conductor", "pins_touched", "monitor_changed_since", "unit_disputed",
 })  # fmt: skip
 """Facts of the record that a red flag may name beside findings and signs."""

@@ -10,8 +10,8 @@ from dataclasses import dataclass
 
 from triage.check_table import CheckKind, check_kinds
 from triage.disposition import Inputs, ItemDisposition
-from triage.evidence import FIXED, OBJECTS, is_powered, item_supply
 from triage.incident import Item
+from triage.involvement import FIXED, OBJECTS, is_powered, item_supply
 from triage.knowledge import Finding, knowledge
 from triage.validity import covers
 
@@ -52,6 +52,8 @@ def propose(given: Inputs, items: tuple[ItemDisposition, ...]) -> tuple[NextChec
     found: dict[tuple[str, str], NextCheck] = {}
     for each in items:
         for check in each.missing:
+            if _failed(check, by_id[each.item], given):
+                continue  # a defect already; the next result that counts is the one as left
             _add(found, given, check_kinds()[check], by_id[each.item], True)
     for item in given.evidence.touched:
         for kind in check_kinds().values():
@@ -61,6 +63,14 @@ def propose(given: Inputs, items: tuple[ItemDisposition, ...]) -> tuple[NextChec
     mandatory = sum(n.mandatory for n in order)
     optional_left = max(MOST - mandatory, 3)
     return tuple(_limited(order, optional_left))
+
+
+def _failed(check: str, item: Item, given: Inputs) -> bool:
+    return any(
+        v.kind and v.kind.id == check and v.state == "valid_fail"
+        and covers(v.check, item, given.incident)
+        for v in given.evidence.verdicts
+    )  # fmt: skip
 
 
 def _limited(order: list[NextCheck], optional_left: int) -> Iterator[NextCheck]:
@@ -89,7 +99,9 @@ def _add(
 
 def _useful(kind: CheckKind, item: Item, given: Inputs) -> bool:
     """Whether an optional check fits the item and has not been made."""
-    if kind.finding is None or item.kind not in kind.applies_to:
+    if kind.id == "humidity_reading":
+        return given.exposure.conditions.humidity is None
+    if kind.finding is None or (item.kind or "other") not in kind.applies_to:
         return False
     supply = item_supply(item, given.supply)
     if kind.id in _ISOLATED_ONLY and supply not in ("isolated", None):

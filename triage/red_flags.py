@@ -6,14 +6,19 @@ Knows no probability, so that no prior can reach it. A cleared flag stays on the
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from triage.evidence import Evidence, is_powered, item_supply, required_checks
+from triage.evidence import Evidence
 from triage.incident import Incident, Item
+from triage.involvement import is_powered, item_supply, required_checks
 from triage.knowledge import Measured, RedFlag, knowledge
 from triage.quantity import parse
 from triage.validity import CheckVerdict, covers, find_item
 
 _ISOLATED_INSTEAD_OF_OUTLET = ("isolated_line_voltages", "isolated_alarm_test")
-_ITEM_CONDITIONS = {"hot": ("hot",), "damaged": ("damaged",), "altered": ("altered", "missing")}
+_ITEM_CONDITIONS = {
+    "hot": ("hot",),
+    "damaged": ("damaged", "live_part"),
+    "altered": ("altered", "missing"),
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -72,7 +77,8 @@ _FACT_WORDS = {
     "live_contact": "somebody is still in contact", "hot": "hot or smoking",
     "two_driven_signs": "two independent signs of something that keeps acting",
     "breach": "skin or glove pierced", "wet_item": "liquid in or on an item",
-    "damaged": "damage seen", "altered": "an item was changed or is missing",
+    "damaged": "damage seen", "wet_contact": "wet contact",
+    "patient_connected": "a patient was connected", "altered": "an item was changed or is missing",
     "scene_changed": "the scene was changed before it was looked at",
     "heart_conductor": "a patient there has a conductor to the heart",
     "pins_touched": "plug pins or contacts were touched",
@@ -124,6 +130,8 @@ def _cleared(
     if flag.never:
         return False
     needed = _needed_passes(flag, item, incident, supply)
+    if flag.passes and not needed:
+        return False  # nothing that could clear it can be made on this item
     if not all(_passed(check, item, incident, evidence) for check in needed):
         return False
     return all(_above(m, item, evidence.verdicts) for m in flag.measured)
@@ -157,6 +165,7 @@ def _above(measured: Measured, item: Item, verdicts: tuple[CheckVerdict, ...]) -
     bound = parse(measured.above, kind).value
     return any(
         v.kind and v.kind.id == measured.check and v.state == "informative" and v.value
-        and not v.as_left and v.check.of == item.id and v.value.value > bound and v.value.bound != "<"
+        and not v.as_left and v.check.of == item.id and v.value.value > bound
+        and v.value.bound != "<"
         for v in verdicts
     )  # fmt: skip

@@ -7,11 +7,12 @@ review, that needs NumPy; it is imported on reaching it.
 import hashlib
 import math
 from collections.abc import Mapping, Sequence
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from triage.diagnosis import Case, build_case, evaluate
-from triage.evidence import Observed
 from triage.knowledge import knowledge
+from triage.told import Observed
 
 if TYPE_CHECKING:
     from numpy import float64
@@ -65,8 +66,8 @@ def upper_mains(
         logs[i] = k.prior_noise * _normals("prior", cause, "")
     prior = np.array(base.prior)[:, None] * np.exp(logs)
     prior /= prior.sum(axis=0)
-    told = {o.finding.id: _noisy(o, causes) for o in observed if not o.measured}
-    measured = {o.finding.id: _noisy(o, causes) for o in observed if o.measured}
+    told = {o.finding.id: _noisy(o.finding.id, o.state) for o in observed if not o.measured}
+    measured = {o.finding.id: _noisy(o.finding.id, o.state) for o in observed if o.measured}
     story = _drawn_story(base, told, prior)
     passes = _drawn_passes(base, measured)
     raw = ((1 - k.wrong_story) * story + k.wrong_story * prior) * np.exp(passes)
@@ -105,11 +106,15 @@ def _drawn_passes(base: Case, measured: Mapping[str, "Draws"]) -> "Draws":
     return both
 
 
-def _noisy(each: Observed, causes: tuple[str, ...]) -> "Draws":
-    """Tempered log likelihoods over causes and draws; noise before normalising over the states."""
+@lru_cache(maxsize=128)
+def _noisy(finding_id: str, seen: str) -> "Draws":
+    """Tempered log likelihoods over causes and draws; noise before normalising over the states.
+
+    The same for ever for one finding and state, so a batch of records draws it once.
+    """
     import numpy as np
 
-    finding = each.finding
+    finding, causes = knowledge().findings[finding_id], tuple(knowledge().causes)
     states = sorted(finding.likelihood)
     rows = np.empty((len(causes), DRAWS))
     for i, cause in enumerate(causes):
@@ -123,7 +128,8 @@ def _noisy(each: Observed, causes: tuple[str, ...]) -> "Draws":
             )
             weights[s] = 1 / (1 + np.exp(-logit))
         tempered = (weights / weights.sum(axis=0)) ** finding.tempering
-        rows[i] = np.log(tempered[states.index(each.state)] / tempered.sum(axis=0))
+        rows[i] = np.log(tempered[states.index(seen)] / tempered.sum(axis=0))
+    rows.setflags(write=False)
     return rows
 
 

@@ -5,9 +5,9 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from triage.diagnosis import Posterior
-from triage.evidence import Observed
 from triage.knowledge import knowledge
 from triage.quadrature import normal_cdf
+from triage.told import Observed
 
 _Z90 = 1.6448536269514722
 STABLE, LEANING = 0.9, 0.6

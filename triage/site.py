@@ -12,6 +12,7 @@ from triage.canonical import canonical, digest
 from triage.clock import Moment, find_zone
 from triage.errors import InvalidValue
 from triage.fields import (
+    Part,
     Reader,
     WordList,
     amount,
@@ -51,7 +52,7 @@ _DUTY: WordList = {
 
 
 @record_part
-class Room:
+class Room(Part):
     """One room; its id survives renaming."""
 
     id: str = ident("Room id.", required=True)
@@ -72,7 +73,7 @@ class Room:
 
 
 @record_part
-class Edition:
+class Edition(Part):
     """The edition of limits in force for one check."""
 
     check: str = ident("Check id.", required=True)
@@ -80,7 +81,7 @@ class Edition:
 
 
 @record_part
-class Tightened:
+class Tightened(Part):
     """A limit made stricter than shipped."""
 
     limit: str = ident("Limit id.", required=True)
@@ -88,7 +89,7 @@ class Tightened:
 
 
 @record_part
-class Raised:
+class Raised(Part):
     """A cause made more probable than shipped; only mains faults may be raised."""
 
     cause: str = ident("Cause id.", required=True)
@@ -97,7 +98,7 @@ class Raised:
 
 
 @record_part
-class Policy:
+class Policy(Part):
     """How careful the house is; never less than shipped."""
 
     miss_ratio: int | None = count("A missed fault weighs as many needless holds.",
@@ -109,7 +110,7 @@ class Policy:
 
 
 @record_part
-class Wording:
+class Wording(Part):
     """Texts the organisation prints; plain text only."""
 
     facts_marking: str | None = text("Marking of the facts part.", 300)
@@ -118,7 +119,7 @@ class Wording:
 
 
 @record_part
-class Contacts:
+class Contacts(Part):
     """Whom to call, by role."""
 
     risk_office: str | None = text("Risk office.", 120)
@@ -129,7 +130,7 @@ class Contacts:
 
 
 @record_part
-class Approval:
+class Approval(Part):
     """Who approved this site file."""
 
     role: str | None = text("Role.", 80)
@@ -138,7 +139,7 @@ class Approval:
 
 
 @record_part
-class Retention:
+class Retention(Part):
     """How long cases are kept."""
 
     years: int | None = count("Years kept after closing.", 1, 100)
@@ -146,7 +147,7 @@ class Retention:
 
 
 @record_part
-class Cost:
+class Cost(Part):
     """Cost of a static control measure at this site."""
 
     control: str = ident("Control id.", required=True)
@@ -154,7 +155,7 @@ class Cost:
 
 
 @record_part
-class SiteFile:
+class SiteFile(Part):
     """The facility's own file."""
 
     schema: str = ident("Version of this form of file; always 1.", required=True)

@@ -8,7 +8,6 @@ import json
 import os
 from collections.abc import Mapping
 from functools import cache
-from importlib.resources import files
 from pathlib import Path
 from typing import Any
 
@@ -36,7 +35,7 @@ def table(name: str) -> Any:
 
 
 def _folder() -> Path:
-    return Path(str(files("triage"))) / "data"
+    return Path(__file__).resolve().parent / "data"
 
 
 def _parsed(text: str, name: str) -> Any:
@@ -44,9 +43,13 @@ def _parsed(text: str, name: str) -> Any:
 
     loader = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
     try:
-        return yaml.load(text, Loader=loader)
+        found = yaml.load(text, Loader=loader)
     except yaml.YAMLError as error:
         raise BadTable(f"data/{name}: {error}") from None
+    # The kept copy must say the same as the YAML: no keys that JSON would turn into text.
+    if json.loads(json.dumps(found)) != found:
+        raise BadTable(f"data/{name}: keys must be text, and values text, numbers, yes or no")
+    return found
 
 
 def _kept(copy: Path) -> Any:

@@ -39,7 +39,8 @@ class CheckVerdict:
         check: as recorded.
         kind: its row in the table of checks, None where the kind is not known.
         state: valid_pass, valid_fail, invalid_pass, invalid_fail, informative (a valid value that
-            is neither pass nor fail), not_practicable or not_done.
+            is neither pass nor fail), repeated (an invalid fail with a later valid result),
+            not_practicable or not_done.
         as_left: it was made after repair and counts only towards release.
         reasons: why it is not valid, in words.
         value: the value read, None without one.
@@ -59,7 +60,22 @@ class CheckVerdict:
 
 def judge_checks(incident: Incident, site: Site) -> tuple[CheckVerdict, ...]:
     """Judge every check of a record, in the order recorded."""
-    return tuple(judge_check(check, incident, site) for check in incident.checks)
+    found = tuple(judge_check(check, incident, site) for check in incident.checks)
+    return tuple(
+        replace(each, state="repeated") if _repeated(each, found, site) else each for each in found
+    )
+
+
+def _repeated(failed: CheckVerdict, all_checks: tuple[CheckVerdict, ...], site: Site) -> bool:
+    """Whether a fail that does not count was repeated later with a result that does."""
+    return failed.state == "invalid_fail" and any(
+        each.kind is failed.kind
+        and each.check.of == failed.check.of
+        and each.state in ("valid_pass", "valid_fail", "informative")
+        and not each.as_left
+        and before(failed.check.at, each.check.at, site.zone) is True
+        for each in all_checks
+    )
 
 
 def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:

@@ -131,6 +131,7 @@ CASTERS: WordList = {
 CONDITION: WordList = {
     "intact": (-1, "looked at: cord, plug and case whole and dry"),
     "damaged": (1, "damaged cord, plug or case"),
+    "live_part": (1, "a bare live part within reach of a finger"),
     "wet": (1, "wet, or liquid got in"),
     "hot": (2, "hot, smoking or smelling burnt"),
     "altered": (1, "changed since the event: cord swapped, cleaned, repaired, opened"),

@@ -11,8 +11,9 @@ from triage.validity import CheckVerdict
 
 STATE_WORDS = {
     "valid_pass": "passed", "valid_fail": "FAILED", "invalid_pass": "does not count",
-    "invalid_fail": "failed, repeat", "informative": "read", "not_done": "not done",
-    "not_practicable": "not practicable",
+    "invalid_fail": "failed, repeat",
+    "repeated": "failed, did not count, repeated later", "informative": "read",
+    "not_done": "not done",    "not_practicable": "not practicable",
 }  # fmt: skip
 Block = dict[str, Any]
 

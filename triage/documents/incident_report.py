@@ -14,7 +14,7 @@ from triage.documents.summary import Summary, summarise
 from triage.errors import CannotWrite
 from triage.render import Attachment, render_html, render_pdf
 
-_MOST = {"causes": 4, "estimates": 4, "unknown": 3, "checks": 4, "cautions": 3, "quotes": 2}
+_MOST = {"causes": 4, "estimates": 3, "unknown": 3, "checks": 4, "cautions": 2, "quotes": 2}
 """Longest lists on page one, so that it stays one page; the rest follows in the other parts."""
 _QUOTE = 120
 
@@ -96,7 +96,9 @@ def _person(s: Summary) -> list[str]:
 def _quotes(s: Summary) -> list[dict[str, str]]:
     found: list[dict[str, str]] = []
     for each in s.statements:
-        if each.words and len(found) < _MOST["quotes"]:
+        # Three items fill the room that a second voice would take; it stands in the facts.
+        most = _MOST["quotes"] if len(s.items) < 3 else 1
+        if each.words and len(found) < most:
             text = each.words
             if len(text) > _QUOTE:
                 text = text[: _QUOTE - 2].rsplit(" ", 1)[0] + " …"

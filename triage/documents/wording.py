@@ -7,9 +7,9 @@ from triage import words as w
 from triage.assessment import Assessment
 from triage.bounds import Probability
 from triage.disposition import ItemDisposition, Level
-from triage.evidence import FIXED
 from triage.fields import WordList
 from triage.incident import Incident, Item
+from triage.involvement import FIXED
 from triage.quantity import worded
 from triage.sensitivity import Range
 from triage.validity import find_item
@@ -78,12 +78,10 @@ def room_line(assessment: Assessment) -> str:
     """What may be used in the room, and who decides."""
     incident, room = assessment.incident, assessment.room
     reasons = "; ".join(room.reasons)
-    for item in incident.items:
-        reasons = reasons.replace(f"{item.id} belongs", f"{item_name(incident, item.id)} belongs")
     if room.level >= Level.WITHDRAW:
         alarm = any(f.flag.id == "monitor_alarm" and not f.cleared for f in assessment.flags)
         how = _FIRST_FAULT if alarm else order(Level.ISOLATE, None, incident)
-        return f"Room: restricted. {how} Because: {reasons}."
+        return f"Room: restricted ({reasons}). {how}"
     if room.level == Level.HOLD:
         return (
             f"Room: restricted where it is held; the engineer on duty decides. Because: {reasons}."

@@ -60,9 +60,9 @@ def rcd_time(current: float, rated: float, kind: str = "general") -> float | Non
         raise InvalidValue(f"no {kind!r} device of {rated!r} A at {current!r} A")
     # A current typed as 150 mA must count as 5 x 30 mA in spite of binary rounding.
     reached = current / rated * (1 + 1e-9)
-    times: dict[int, float] = row("interrupters", "rcd_times")[kind]
+    times: list[tuple[float, float]] = row("interrupters", "rcd_times")[kind]
     return max(
-        ((multiple, time) for multiple, time in times.items() if reached >= multiple),
+        ((multiple, time) for multiple, time in times if reached >= multiple),
         default=(0, None),
     )[1]
 

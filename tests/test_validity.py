@@ -1,0 +1,390 @@
+from typing import Any
+
+import pytest
+from sample_records import spoiled, text, tree
+
+from triage.check_table import check_kinds
+from triage.evidence import gather
+from triage.limits import load_limits
+from triage.record import loads
+from triage.site import Site, no_site
+from triage.site import loads as load_site
+from triage.validity import CheckVerdict, covers, is_stricter, judge_checks, tightened
+
+CHECK = "checks.0."
+
+
+def verdict(changes: dict[str, Any] | None = None, site: Site | None = None) -> CheckVerdict:
+    incident = loads(text(spoiled(changes or {}))).incident
+    return judge_checks(incident, site or no_site())[0]
+
+
+def check(**fields: Any) -> dict[str, Any]:
+    """Changes that make the sample's check another one; None takes a field out."""
+    return {CHECK + name: value for name, value in fields.items()}
+
+
+EARTH = check(
+    kind="earth_continuity", method="low_current_flexed", value="0.08 ohm", state=["flexed"]
+)
+LOOK = check(kind="visual_inspection", method="full_length_look", value=None, state=None)
+INSULATION = check(
+    kind="insulation_resistance", method="dc_500v", value="200 Mohm", state=["unplugged"]
+)
+OUTLET = check(
+    kind="outlet_test", method="full_outlet_test", value="0.1 ohm", of="w3-1", state=None
+)
+METAL = check(kind="metal_voltage_loaded", method="loaded_1kohm", value="2 mV")
+GROUND = {
+    **check(kind="object_to_ground", method="dc_100v", value="20 Gohm"),
+    "items.0.kind": "cart", "items.0.power": "none",
+}  # fmt: skip
+SOUND = {
+    "touch": {},
+    "earth": EARTH,
+    "look": LOOK,
+    "insulation": INSULATION,
+    "outlet": OUTLET,
+    "metal": METAL,
+}
+
+
+@pytest.mark.parametrize("kind", SOUND)
+def test_a_check_made_rightly_is_a_valid_pass(kind: str) -> None:
+    found = verdict(SOUND[kind])
+    assert (found.state, found.reasons, found.as_left) == ("valid_pass", (), False)
+
+
+SPOILS = {
+    "another cord": check(same_cord="no"),
+    "another cord by id": {"items.0.cord": "cord-1", **check(cord="cord-2")},
+    "another outlet by id": {"items.1.id": "w3-1", **check(outlet="cord-2")},
+    "cord not known": check(same_cord=None),
+    "right cord, outlet not known": {"items.0.cord": "cord-1", **check(same_cord=None, cord="cord-1")},
+    "after repair": check(disturbed=["repaired"]),
+    "after cleaning": check(disturbed=["cleaned"]),
+    "after a new cord": check(disturbed=["cord_swapped"]),
+    "after a disturbance not named": check(stage="after_disturbance"),
+    "after a disturbance called none": check(stage="after_disturbance", disturbed=["none"]),
+    "stage not known": check(stage=None),
+    "scene cleaned before it": {"scene.changes": ["cleaned"], "scene.changed_at": "2026-01-14 08:00"},
+    "scene cleaned, nobody knows when": {"scene.changes": ["cleaned"]},
+    "scene repaired the same morning": {"scene.changes": ["repaired"], "scene.changed_at": "2026-01-14 morning"},
+    "item altered": {"items.0.condition": ["altered"]},
+    "item gone": {"items.0.condition": ["missing"]},
+    "wrong method": check(method="by_hand"),
+    "method of another check": check(method="dc_10v"),
+    "method not known": check(method=None),
+    "isolated supply": check(supply="isolated"),
+    "supply not known": check(supply=None),
+    "out of calibration": check(calibration_due="2026-01-13"),
+    "calibration ends that day": check(calibration_due="2026-01-14"),
+    "calibration not known": check(calibration_due=None),
+    "no instrument": check(instrument=None),
+    "unit in doubt": check(unit_disputed="yes"),
+    "value out of range": check(value="2 A"),
+    "negative value": check(value="-40 uA"),
+    "value without a unit": check(value="40"),
+    "value of another kind": check(value="40 V"),
+    "value not readable": check(value="fine"),
+    "no value": check(value=None),
+    "before the event": check(at="2026-01-14 07:00"),
+    "the year before": check(at="2025-01-14"),
+    "perhaps before the event": check(at="2026-01-14"),
+    "time not known": check(at=None),
+    "time of the event not known": {"event.at": None},
+    "in standby": check(state=["standby"]),
+    "state not known": check(state=None),
+    "switched off": check(state=["off", "warm"]),
+    "powered otherwise": {"items.0.power": "mains_standby"},
+    "power at the event not known": {"items.0.power": None, **check(state=["standby"])},
+    "wet event, tested dry": {"contacts.0.moisture": "wet"},
+    "damp event, tested dry": {"contacts.0.moisture": "damp"},
+    "wet item, tested dry": {"items.0.condition": ["wet"]},
+    "on a wet floor, tested dry": {"contacts.0.also_touching": "wet_floor"},
+    "cleaning when it happened, tested dry": {"event.activity": "wet_cleaning"},
+    "not said of which item": check(of=None),
+    "of an item it is no check for": check(of="w3-1"),
+    "kind not known": check(kind=None),
+    "kind not in the table": check(kind="tongue_test"),
+    "not practicable": check(result="not_practicable", value=None, reason="in use"),
+    "no result and no value": check(result=None, value=None),
+    "reading leaves it open": check(value=">40 uA", result=None),
+    "stated pass, reading leaves it open": check(value=">40 uA"),
+    "value over the limit": check(value="20 mA"),
+    "stated fail": check(result="fail"),
+}  # fmt: skip
+
+
+@pytest.mark.parametrize("name", SPOILS)
+def test_no_single_spoiling_leaves_a_valid_pass(name: str) -> None:
+    found = verdict(SPOILS[name])
+    assert found.state not in ("valid_pass", "informative")
+    assert found.reasons or found.state == "valid_fail"
+
+
+@pytest.mark.parametrize("name", SPOILS)
+def test_no_spoiling_makes_a_failed_check_pass(name: str) -> None:
+    failing = {**check(value="20 mA", result="fail"), **SPOILS[name]}
+    assert "pass" not in verdict(failing).state
+
+
+@pytest.mark.parametrize("kind", SOUND)
+@pytest.mark.parametrize("name", [n for n in SPOILS if set(SPOILS[n]) <= {
+    CHECK + f for f in ("same_cord", "disturbed", "stage", "method", "at", "of")} | {
+    "event.at", "scene.changes", "scene.changed_at"}])  # fmt: skip
+def test_what_spoils_one_kind_of_check_spoils_every_kind(name: str, kind: str) -> None:
+    if kind == "outlet" and name in ("cord not known", "of an item it is no check for"):
+        pytest.skip("an outlet has no cord of its own")
+    spoils = dict(SPOILS[name])
+    if spoils.get(CHECK + "of") == "w3-1":
+        spoils = check(of="w3-1", kind="touch_current", method="direct_earthed")
+    assert verdict({**SOUND[kind], **spoils}).state != "valid_pass"
+
+
+@pytest.mark.parametrize("name", ["calibration not known", "no instrument", "out of calibration"])
+def test_looking_needs_no_instrument(name: str) -> None:
+    assert verdict({**LOOK, **SPOILS[name]}).state == "valid_pass"
+
+
+def test_a_spoiled_measurement_is_not_informative_either() -> None:
+    assert verdict(GROUND).state == "informative"
+    for spoil in (check(method="dc_5v"), check(calibration_due=None), check(at=None), check(value=None),
+                  check(disturbed=["cleaned"])):  # fmt: skip
+        assert verdict({**GROUND, **spoil}).state != "informative"
+
+
+@pytest.mark.parametrize("kind", [EARTH, LOOK], ids=["earth_continuity", "visual_inspection"])
+@pytest.mark.parametrize("name", ["another cord", "wrong method", "calibration not known", "time not known",
+                                  "before the event", "after repair", "not said of which item"])  # fmt: skip
+def test_a_failed_earth_and_visible_damage_count_however_they_were_found(
+    kind: dict[str, Any], name: str
+) -> None:
+    assert verdict({**kind, **check(result="fail"), **SPOILS[name]}).state == "valid_fail"
+
+
+@pytest.mark.parametrize("name", ["wrong method", "calibration not known", "isolated supply", "value out of range",
+                                  "before the event", "no instrument"])  # fmt: skip
+def test_another_failed_check_with_a_doubtful_reading_is_held_and_repeated(name: str) -> None:
+    assert verdict({**check(value="20 mA", result="fail"), **SPOILS[name]}).state == "invalid_fail"
+
+
+@pytest.mark.parametrize("stated", ["pass", None])
+def test_a_value_over_the_limit_fails_whatever_was_stated(stated: str | None) -> None:
+    # IEC 60601-1 ed. 3, 8.7.3: touch current 100 uA normal, 500 uA in single fault condition.
+    assert verdict(check(value="0.6 mA", result=stated)).state == "valid_fail"
+    assert verdict({**EARTH, **check(value="25 ohm", result=stated)}).state == "valid_fail"
+
+
+def test_a_stated_fail_counts_although_the_value_keeps_the_limit() -> None:
+    assert verdict(check(value="10 uA", result="fail")).state == "valid_fail"
+
+
+def test_a_value_within_the_limit_passes_without_a_stated_result() -> None:
+    found = verdict(check(result=None))
+    assert found.state == "valid_pass"
+    assert found.limit is not None and found.value is not None and found.value.text == "40 uA"
+
+
+def test_a_reading_below_the_instruments_range_passes_and_above_it_fails() -> None:
+    assert verdict(check(value="<10 uA", result=None)).state == "valid_pass"
+    assert verdict(check(value=">20 mA", result=None)).state == "valid_fail"
+
+
+def test_the_deciding_limit_is_the_one_with_the_least_room() -> None:
+    found = verdict({})
+    rooms = [c.margin for j in found.judgements for c in j.comparisons]
+    assert len(rooms) >= 1
+    assert found.limit in [
+        c.limit for j in found.judgements for c in j.comparisons if c.margin == min(rooms)
+    ]
+
+
+def test_not_practicable_keeps_its_reason() -> None:
+    found = verdict(check(result="not_practicable", value=None, reason="in use"))
+    assert (found.state, found.reasons) == ("not_practicable", ("in use",))
+
+
+def test_a_value_beside_not_practicable_still_speaks() -> None:
+    assert verdict(check(result="not_practicable", value="20 mA")).state == "valid_fail"
+
+
+def test_only_an_item_without_protective_earth_may_go_without_that_test() -> None:
+    method = {**EARTH, **check(method="no_protective_earth", value=None)}
+    assert verdict({**method, "items.0.equipment_class": "II"}).state == "valid_pass"
+    for other in ("I", "internal", None):
+        assert verdict({**method, "items.0.equipment_class": other}).state == "invalid_pass"
+
+
+def test_a_test_off_the_mains_asks_for_no_state_and_no_supply() -> None:
+    # The alternative method joins the poles of the item and brings its own source (IEC 62353, 5.3.3.2).
+    off = check(method="alternative", state=["unplugged"], supply=None)
+    assert verdict(off).state == "valid_pass"
+    assert verdict({**off, "contacts.0.moisture": "wet"}).state == "valid_pass"
+
+
+def test_a_wet_event_is_answered_by_a_wet_test() -> None:
+    assert (
+        verdict({"contacts.0.moisture": "wet", **check(state=["on", "wet"])}).state == "valid_pass"
+    )
+
+
+def test_a_mild_disturbance_that_is_named_leaves_the_check_valid() -> None:
+    for word in ("moved", "unplugged", "powered_down"):
+        assert verdict(check(stage="after_disturbance", disturbed=[word])).state == "valid_pass"
+
+
+def test_a_scene_changed_after_the_check_leaves_it_valid() -> None:
+    later = {"scene.changes": ["cleaned"], "scene.changed_at": "2026-01-14 10:00"}
+    assert verdict(later).state == "valid_pass"
+
+
+# ---------------------------------------------------------------------- as left
+
+
+@pytest.mark.parametrize("value", ["40 uA", "20 mA"])
+def test_as_left_never_speaks_about_what_was_felt(value: str) -> None:
+    left = check(stage="as_left", value=value, result=None, disturbed=["repaired"])
+    incident = loads(text(spoiled(left))).incident
+    verdicts = judge_checks(incident, no_site())
+    assert verdicts[0].as_left
+    without = loads(text(spoiled({"checks": []}))).incident
+    found, bare = gather(incident, verdicts, "earthed"), gather(without, (), "earthed")
+    # That the item is defective still, after repair, is another matter than the event.
+    assert [each.check for each in found.defects] == ["touch_current"] * (value == "20 mA")
+    assert {k: o.state for k, o in found.observed.items()} == {
+        k: o.state for k, o in bare.observed.items()
+    }
+
+
+@pytest.mark.parametrize("name", ["wrong method", "isolated supply", "calibration not known", "before the event",
+                                  "time not known", "no value", "unit in doubt", "not said of which item"])  # fmt: skip
+def test_as_left_is_no_excuse_for_a_doubtful_reading(name: str) -> None:
+    assert verdict({**check(stage="as_left"), **SPOILS[name]}).state == "invalid_pass"
+
+
+def test_as_left_may_follow_repair_with_a_new_cord() -> None:
+    left = check(stage="as_left", same_cord="no", disturbed=["repaired", "cord_swapped"])
+    assert verdict(left).state == "valid_pass"
+
+
+# ---------------------------------------------------------------------- the site's limits
+
+
+def site(text_: str) -> Site:
+    return load_site(f"schema: 1\n{text_}\n")
+
+
+def limit_of(found: CheckVerdict) -> str:
+    assert found.limit is not None
+    return found.limit.edition.id
+
+
+def test_the_edition_in_force_decides() -> None:
+    # IEC 62353: 0.3 ohm with cord; NFPA 99-2012: 0.5 ohm.
+    between = {**EARTH, **check(value="0.4 ohm", result=None)}
+    nfpa = site("editions: [{check: earth_continuity, edition: nfpa99-2012}]")
+    assert verdict(between).state == "valid_fail"
+    assert (verdict(between, nfpa).state, limit_of(verdict(between, nfpa))) == (
+        "valid_pass",
+        "nfpa99-2012",
+    )
+
+
+@pytest.mark.parametrize("edition", ["nowhere-2030", "iso20345", "working"])
+def test_an_edition_without_a_limit_for_the_check_leaves_the_shipped_one(edition: str) -> None:
+    strange = site(f"editions: [{{check: touch_current, edition: {edition}}}]")
+    assert verdict(check(value="20 mA"), strange).state == "valid_fail"
+    assert limit_of(verdict({}, strange)) == limit_of(verdict())
+
+
+def test_a_site_may_make_a_limit_stricter() -> None:
+    found = verdict(EARTH)
+    assert found.limit is not None
+    tight = site(f"tightened: [{{limit: {found.limit.id}, value: 0.05 ohm}}]")
+    stricter = verdict(EARTH, tight)
+    assert stricter.state == "valid_fail" and stricter.limit is not None
+    assert (stricter.limit.text, stricter.limit.citation.known) == ("0.05 ohm", "judgement")
+    assert (
+        "site file" in stricter.limit.citation.source
+        and found.limit.text in stricter.limit.citation.source
+    )
+
+
+@pytest.mark.parametrize(
+    "value", ["5 ohm", "0 ohm", "<0.01 ohm", "nonsense", "unknown", "0.05 V", "-1 ohm"]
+)
+def test_a_site_never_makes_a_limit_looser_nor_unreadable(value: str) -> None:
+    shipped = verdict(EARTH).limit
+    assert shipped is not None
+    loose = site(f"tightened: [{{limit: {shipped.id}, value: '{value}'}}]")
+    assert tightened(shipped, loose) == shipped
+    assert verdict({**EARTH, **check(value="1 ohm")}, loose).state == "valid_fail"
+
+
+@pytest.mark.parametrize("limit", load_limits().rows, ids=lambda each: each.id)
+def test_stricter_means_less_room_on_the_side_of_the_limit(limit) -> None:
+    inside, outside = (0.9, 1.1) if limit.sense == "max" else (1.1, 0.9)
+    assert is_stricter(limit.value * inside, limit)
+    assert not is_stricter(limit.value * outside, limit)
+    assert not is_stricter(limit.value, limit) and not is_stricter(0, limit)
+
+
+def test_a_reading_of_at_least_the_limit_does_not_exceed_a_strict_lower_limit() -> None:
+    # "at least 50 kohm" may be exactly 50 kohm, which a strict limit does not allow.
+    row = next(
+        each
+        for each in load_limits().rows
+        if each.sense == "min" and each.check == "insulation_resistance"
+    )
+    at = row.text
+    open_ = {**INSULATION, **check(value=f"\u2265{at}", result=None)}
+    assert verdict(open_).state in ("valid_pass", "not_done", "valid_fail")
+    assert (
+        verdict({**INSULATION, **check(value=f"\u2264{at}", result=None)}).state != "valid_pass"
+        or not row.strict
+    )
+
+
+# ---------------------------------------------------------------------- which item a check speaks about
+
+
+def test_a_check_speaks_about_its_item_its_outlet_and_the_cord_it_was_made_with() -> None:
+    changed = spoiled({
+        "items.0.cord": "cord-1",
+        "checks": [
+            {"id": "k1", "kind": "outlet_test", "of": "w3-1"},
+            {"id": "k2", "kind": "earth_continuity", "of": "pump", "same_cord": "yes"},
+            {"id": "k3", "kind": "earth_continuity", "of": "pump", "same_cord": "no"},
+            {"id": "k4", "kind": "touch_current", "of": "pump", "same_cord": "yes"},
+            {"id": "k5", "kind": "two_metal_voltage", "of": "pump", "second": "cord-2"},
+            {"id": "k6", "kind": "outlet_test"},
+        ],
+    })  # fmt: skip
+    incident = loads(text(changed)).incident
+    about = {
+        c.id: {i.id for i in incident.items if covers(c, i, incident)} for c in incident.checks
+    }
+    assert about == {
+        "k1": {"pump", "w3-1"}, "k2": {"pump", "cord-1"}, "k3": {"pump"}, "k4": {"pump"},
+        "k5": {"pump", "cord-2"}, "k6": set(),
+    }  # fmt: skip
+
+
+def test_every_kind_of_check_in_every_state_of_the_sample_is_judged() -> None:
+    for kind in check_kinds():
+        for method in [each.method for each in check_kinds()[kind].accepts] + [None]:
+            found = verdict(check(kind=kind, method=method))
+            assert found.state in (
+                "valid_pass",
+                "valid_fail",
+                "invalid_pass",
+                "invalid_fail",
+                "informative",
+                "not_done",
+            )
+
+
+def test_the_sample_is_untouched_by_its_spoilings() -> None:
+    spoiled(SPOILS["another cord"])
+    assert tree()["checks"][0]["same_cord"] == "yes"
