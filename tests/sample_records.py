@@ -5,6 +5,14 @@ from typing import Any
 
 import yaml
 
+
+class _Plain(yaml.SafeDumper):
+    """Writes a shared part out each time, since records know no aliases."""
+
+    def ignore_aliases(self, data: Any) -> bool:
+        return True
+
+
 RECORD_ID = "0123456789abcdef" * 2
 
 
@@ -15,7 +23,7 @@ def tree() -> dict[str, Any]:
 
 def text(record: Any) -> str:
     """The YAML text of a tree of text, quoted so that no reader can take it for anything else."""
-    return yaml.dump(record, default_style='"', allow_unicode=True, sort_keys=False)
+    return yaml.dump(record, Dumper=_Plain, default_style='"', allow_unicode=True, sort_keys=False)
 
 
 def spoiled(changes: dict[str, Any], base: dict[str, Any] | None = None) -> dict[str, Any]:

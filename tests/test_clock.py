@@ -1,9 +1,12 @@
+import re
 from datetime import UTC, datetime, timedelta
+from pathlib import Path
 
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+import triage
 from triage.clock import before, find_zone, hours_between, now, parse
 from triage.errors import InvalidValue
 
@@ -176,6 +179,21 @@ def test_now_is_a_minute_in_utc() -> None:
     begin, _ = now().interval("Asia/Kolkata")
     assert early <= begin <= datetime.now(UTC)
     assert now().precision == "minute"
+
+
+READS_THE_CLOCK = re.compile(
+    r"datetime[.](?:now|utcnow|today)|date[.]today|time[.](?:time|localtime|gmtime)[(]"
+)
+
+
+def test_one_place_reads_the_clock() -> None:
+    package = Path(triage.__file__).parent
+    found = [
+        path.name
+        for path in package.rglob("*.py")
+        if READS_THE_CLOCK.search(path.read_text("utf-8"))
+    ]
+    assert found == ["clock.py"]
 
 
 MOMENTS = st.builds(

@@ -246,6 +246,29 @@ def test_zero_negative_and_unknown_never_become_an_estimate(value):
         Estimate.exact(1, "V").scaled(value if value != float("inf") else 0)
 
 
+@pytest.mark.parametrize("value", [100.0, 1e-6])
+def test_an_exact_value_exceeds_what_is_below_it_and_nothing_else(value):
+    exact = Estimate.exact(value, "V")
+    assert exact.probability_above(value / 2) == pytest.approx(1)
+    assert exact.probability_above(value * 2) == pytest.approx(0)
+    assert exact.quantile(0.9) == pytest.approx(value)
+
+
+def test_the_same_quantity_at_two_finenesses_still_multiplies():
+    fine, coarse = load_line(12), load_line(8)
+    both = fine.times(coarse, "V2")
+    assert both.mean_log == pytest.approx(2 * fine.mean_log, abs=0.01)
+    assert both.variance_log == pytest.approx(4 * fine.variance_log, rel=0.1)
+
+
+def test_an_unequal_resolved_pair_keeps_its_weights():
+    # One half of the nodes of a two-source mixture: weights still sum to 1 after every step.
+    both = load_line(12).times(
+        through(lambda x: x, Estimate.lognormal(1, {"h": 1.0}, ""), unit=""), "V"
+    )
+    assert sum(both.weights) == pytest.approx(1, abs=1e-12)
+
+
 def test_a_spread_that_is_not_a_number_is_refused():
     with pytest.raises(InvalidValue):
         Estimate.lognormal(1, {"a": float("nan")}, "V")

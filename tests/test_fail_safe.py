@@ -13,7 +13,6 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-import yaml
 from answer_order import apply, more_adverse, named, pick
 from random_records import (
     FAILING,
@@ -22,6 +21,7 @@ from random_records import (
     Tree,
     answer_places,
     clean_tree,
+    identity,
     passing_check,
     random_tree,
     record,
@@ -45,9 +45,10 @@ from triage.involvement import involved, required_checks
 from triage.knowledge import knowledge
 from triage.site import Site, from_plain, no_site
 from triage.strict_yaml import Plain
+from triage.tables import table as load_table
 
 FLOOR = {"hold": Level.HOLD, "withdraw": Level.WITHDRAW, "isolate": Level.ISOLATE}
-CHUNKS, SIZE = 8, 160
+CHUNKS, SIZE = 6, 120
 
 
 @cache
@@ -114,9 +115,14 @@ def test_every_single_adverse_change_of_a_released_case_lowers_nothing(story):
     tree = clean_tree(rng, story, measured=True)
     before = standing(judged(tree))
     assert before["headline"] == Level.STATIC_CONTROLS
-    for step in more_adverse(tree):
+    for step in sampled(rng, more_adverse(tree), 70):
         after = standing(judged(apply(tree, [step])))
         assert not lowered(before, after), named(tree, [step])
+
+
+def sampled(rng: random.Random, steps: list[Any], most: int) -> list[Any]:
+    """Some of the steps where there are very many."""
+    return steps[:most] if len(steps) <= most else rng.sample(steps, most)
 
 
 @pytest.mark.parametrize("kind", sorted(FAILING))
@@ -128,7 +134,7 @@ def test_every_single_adverse_change_beside_a_failed_check_lowers_nothing(kind):
     tree["checks"].append(passing_check("f1", kind, item) | {"value": FAILING[kind]})
     before = standing(judged(tree))
     assert before["headline"] >= Level.WITHDRAW or kind == "applied_part_leakage"
-    for step in more_adverse(tree):
+    for step in sampled(rng, more_adverse(tree), 50):
         after = standing(judged(apply(tree, [step])))
         assert not lowered(before, after), named(tree, [step])
 
@@ -153,25 +159,43 @@ ORDER_BREAKERS: dict[str, Callable[[pytest.MonkeyPatch], None]] = {
 
 @pytest.mark.parametrize("name", ORDER_BREAKERS)
 def test_the_order_property_notices_when(name, monkeypatch):
-    cases = [
-        clean_tree(random.Random(1), "device"),
-        clean_tree(random.Random(2), "device") | {"statements": [{"id": "s", "sensation": "thrown"}]},
-        clean_tree(random.Random(3), "device"),
-    ]
-    cases[2]["checks"][2] |= {"result": "fail"}
+    tree, step = _BROKEN_BY[name]()
+    ahead = lowered(standing(judged(tree)), standing(judged(apply(tree, [step]))))
     ORDER_BREAKERS[name](monkeypatch)
-    broken = [
-        step for tree in cases for step in more_adverse(tree)
-        if lowered(standing(judged(tree)), standing(judged(apply(tree, [step]))))
-    ] if "floor" not in name else _flags_below_floor(cases[1])  # fmt: skip
-    if name.startswith("an unknown"):
-        unknown = apply(cases[0], [s for s in more_adverse(cases[0]) if s[1] == "unknown"][:1])
-        broken += [1] if judged(unknown).gate.open else []
-    assert broken
+    after = lowered(standing(judged(tree)), standing(judged(apply(tree, [step]))))
+    assert not ahead
+    assert after or _flags_below_floor(apply(tree, [step])) or judged(apply(tree, [step])).gate.open
+
+
+def _change(tree: Tree, name: str, value: Any) -> tuple[Tree, tuple[int, Any]]:
+    places = list(answer_places(copy.deepcopy(tree)))
+    return tree, (next(n for n, (_, field, _row) in enumerate(places) if field == name), value)
+
+
+def _failed_device() -> Tree:
+    tree = clean_tree(random.Random(3), "device")
+    mine = next(c for c in tree["checks"] if c["kind"] == "touch_current")
+    mine |= {"result": "fail", "value": FAILING["touch_current"]}
+    return tree
+
+
+_BROKEN_BY: dict[str, Callable[[], tuple[Tree, tuple[int, Any]]]] = {
+    "an unknown answer leaves the gate open": lambda: _change(
+        clean_tree(random.Random(1), "device"), "sensation", "unknown"
+    ),
+    "red flags carry no floor": lambda: _change(
+        clean_tree(random.Random(2), "device"), "signs", ["burn"]
+    ),
+    "a fail in a changed scene is void": lambda: _change(_failed_device(), "changes", ["cleaned"]),
+    "lasting pain is milder for the person than a throw": lambda: _change(
+        identity(random.Random(4)) | {"statements": [{"id": "s", "sensation": "thrown"}]},
+        "sensation", "sustained_pain",
+    ),
+}  # fmt: skip
 
 
 def _flags_below_floor(tree: Tree) -> list[Any]:
-    a = judged(tree | {"persons": [{"id": "p1", "signs": ["burn"]}]})
+    a = judged(tree)
     levels = {each.item: each.level for each in a.items}
     return [f for f in a.flags for i in f.open_items if i and levels[i] < FLOOR[f.flag.floor]]
 
@@ -233,7 +257,8 @@ def _other_cord(tree: Tree, kind: str) -> Tree:
 
 def _wrong_supply(tree: Tree, kind: str) -> Tree:
     check = passing_check("x", kind, tree["items"][0])
-    return check | {"supply": "earthed" if check.get("supply") == "isolated" else "isolated"}
+    method, supply = PASSING[kind][:2]
+    return check | {"method": method, "supply": "earthed" if supply == "isolated" else "isolated"}
 
 
 def _out_of_calibration(tree: Tree, kind: str) -> Tree:
@@ -272,7 +297,7 @@ def test_a_pass_that_does_not_count_changes_no_level_no_gate_and_no_ranking(why)
         after = judged(worthless)
         tried += 1
         assert after.posterior.probability == before.posterior.probability
-        assert after.gate == before.gate
+        assert (after.gate.open, after.gate.upper) == (before.gate.open, before.gate.upper)
         assert not lowered(standing(before), standing(after))
     assert tried > 80
 
@@ -306,9 +331,7 @@ def conclusions(a: Assessment, names: dict[str, str] | None = None) -> Any:
     """What was concluded, without the order of parts and with ids translated."""
     told = (names or {}).get
     items = {(told(i.item, i.item), i.level, len(i.missing)) for i in a.items}
-    flags = {
-        (f.flag.id, f.cleared, frozenset(told(i, i) for i in f.items)) for f in a.flags
-    }
+    flags = {(f.flag.id, f.cleared, frozenset(told(i, i) for i in f.items)) for f in a.flags}
     checks = {(n.kind.id, told(n.item, n.item)) for n in a.next_checks if n.mandatory}
     defects = sorted((d.check, told(d.item, d.item) or "") for d in a.evidence.defects)
     return (
@@ -421,7 +444,9 @@ def test_the_verbatim_property_notices_a_program_that_reads_the_words(monkeypatc
     genuine = triage.assessment.prior
 
     def gullible(area, supply, the_site):
-        return _only("person_walking")() if "static" in heard[-1] else genuine(area, supply, the_site)
+        return (
+            _only("person_walking")() if "static" in heard[-1] else genuine(area, supply, the_site)
+        )
 
     heard = ["a snap"]
     monkeypatch.setattr(triage.assessment, "prior", gullible)
@@ -460,7 +485,7 @@ DATA = sorted((Path(triage.assessment.__file__).parent / "data").glob("*.yaml"))
 
 @pytest.mark.parametrize("path", DATA, ids=lambda p: p.stem)
 def test_no_table_bids_anybody_to_cut_power_without_a_condition(path):
-    texts = list(texts_of(yaml.safe_load(path.read_text(encoding="utf-8"))))
+    texts = list(texts_of(load_table(path.stem)))
     assert texts
     sentences = [text for text in texts if " " in text]  # one word alone is the id of a floor
     assert [b for text in sentences for b in power_off_imperatives(text)] == []
@@ -609,10 +634,6 @@ def test_required_checks_never_shorten_when_the_supply_or_the_contact_is_not_kno
 
 
 def test_every_mandatory_check_has_a_passing_example_here():
-    mandatory = {k for kind in check_kinds() for k in [kind] if _is_mandatory(kind)}
+    mandatory = {check for row in load_table("checks")["mandatory"] for check in row["checks"]}
     assert mandatory <= set(PASSING)
-
-
-def _is_mandatory(check: str) -> bool:
-    rows = yaml.safe_load((DATA[0].parent / "checks.yaml").read_text(encoding="utf-8"))["mandatory"]
-    return any(check in row["checks"] for row in rows)
+    assert set(PASSING) <= set(check_kinds())

@@ -6,7 +6,7 @@ import pytest
 from triage import fields
 from triage.errors import BadRecord
 from triage.fields import UNKNOWN, Field, Reader, table
-from triage.strict_yaml import parse
+from triage.strict_yaml import Plain, parse
 
 COLOURS = {"red": (1, ""), "blue_green": (-1, ""), "IV": (None, "")}
 
@@ -108,6 +108,14 @@ def test_all_faults_come_at_once_each_with_line_column_and_path() -> None:
 )  # fmt: skip
 def test_a_fault_says_what_was_found_and_what_would_do(text: str, says: str) -> None:
     assert any(says in each for each in faults(text)), faults(text)
+
+
+@pytest.mark.parametrize("bad", ["\x00", "\x1b", "\x7f", "\x9f", "\ud800"])
+def test_a_control_character_is_refused_also_where_no_file_was_read(bad: str) -> None:
+    reader = Reader(Plain("form", {"name": f"x{bad}y"}))
+    reader.build(Tree, reader.plain.tree, "")
+    with pytest.raises(BadRecord, match=f"name: control character U.{ord(bad):04X} is not allowed"):
+        reader.finish()
 
 
 def test_a_long_wrong_value_is_shown_shortened() -> None:

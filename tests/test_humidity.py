@@ -127,6 +127,17 @@ def test_air_outside_the_formula_is_unknown_not_a_number(attempt):
         attempt()
 
 
+# WMO-No. 8: -45 to 60 degC over water, -65 to 0 degC over ice.
+@pytest.mark.parametrize(
+    ("formula", "low", "high"), [(saturation_pressure, -45, 60), (saturation_pressure_ice, -65, 0)]
+)
+def test_the_range_of_the_vapour_pressure_ends_where_it_says(formula, low, high):
+    assert 0 < formula(low) < formula(high)
+    for outside in (low - 0.1, high + 0.1):
+        with pytest.raises(OutOfRange):
+            formula(outside)
+
+
 @pytest.mark.parametrize(("fraction", "sd"), [(1.2, 0), (-0.1, 0), (0.3, -1), (float("nan"), 0)])
 def test_a_humidity_that_cannot_be_is_refused(fraction, sd):
     with pytest.raises(InvalidValue):

@@ -178,6 +178,13 @@ def test_a_measured_system_resistance_replaces_floor_and_shoe():
     assert voltage.quantile(0.99) < 200
 
 
+def test_thick_soles_lower_the_capacitance_unless_another_posture_is_named():
+    clogs = M.walker("vinyl", "foam_clog", Humidity(0.3))
+    assert clogs.capacitance.median == pytest.approx(75e-12)
+    seated = M.walker("vinyl", "foam_clog", Humidity(0.3), body="seated")
+    assert seated.capacitance.median == pytest.approx(250e-12)
+
+
 def test_a_person_and_a_cart_do_not_share_the_doubt_about_their_capacitance():
     assert set(M.capacitance("cart").loadings) == {"object_capacitance"}
     assert set(M.capacitance("standing").loadings) == {"capacitance"}

@@ -39,6 +39,46 @@ def test_a_quantity_is_read_in_every_usual_spelling(text: str, kind: str, si: fl
     )
 
 
+# SI prefixes: SI Brochure, 9th edition (2019), table 7; minute, hour, day: table 8; ounce-force
+# 0.278 013 9 N: NIST SP 811, B.8 (pound-force 4.448 221 6 N, 16 ounces).
+DECIMAL = {
+    "p": 1e-12,
+    "n": 1e-9,
+    "u": 1e-6,
+    "m": 1e-3,
+    "": 1,
+    "k": 1e3,
+    "M": 1e6,
+    "G": 1e9,
+    "T": 1e12,
+}
+PREFIXED = {
+    "current": ("A", "n u m k"), "voltage": ("V", "u m k"), "resistance": ("ohm", "u m k M G T"),
+    "capacitance": ("F", "p n u m"), "charge": ("C", "p n u m"), "energy": ("J", "n u m"),
+    "power": ("W", "m k"), "frequency": ("Hz", "k M"), "force": ("N", "m"),
+}  # fmt: skip
+OTHER = [
+    ("length", "mm", 1e-3), ("length", "cm", 1e-2), ("length", "m", 1), ("duration", "us", 1e-6),
+    ("duration", "ms", 1e-3), ("duration", "s", 1), ("duration", "min", 60), ("duration", "minutes", 60),
+    ("duration", "h", 3600), ("duration", "hours", 3600), ("duration", "d", 86400), ("duration", "day", 86400),
+    ("duration", "days", 86400), ("duration", "hour", 3600), ("duration", "sec", 1), ("force", "g", 9.80665e-3),
+    ("force", "oz", 0.2780139), ("power", "VA", 1), ("resistance", "ohms", 1), ("resistance", "Ohm", 1),
+    ("frequency", "hz", 1), ("voltage", "v", 1), ("current", "a", 1), ("humidity_points", "%RH", 1),
+]  # fmt: skip
+EVERY = OTHER + [
+    (kind, prefix + unit, DECIMAL[prefix])
+    for kind, (unit, prefixes) in PREFIXED.items()
+    for prefix in ["", *prefixes.split(" ")]
+]
+
+
+@pytest.mark.parametrize(("kind", "unit", "factor"), EVERY)
+def test_every_unit_has_the_size_that_the_standard_gives_it(
+    kind: str, unit: str, factor: float
+) -> None:
+    assert parse(f"3 {unit}", kind).value == pytest.approx(3 * factor, rel=1e-6)
+
+
 @pytest.mark.parametrize(("text", "kind", "si"), SPELLINGS)
 def test_the_text_is_kept_as_typed(text: str, kind: str, si: float) -> None:
     assert parse(f"  {text} ", kind).text == text
@@ -123,7 +163,10 @@ def test_a_reading_beyond_the_range_keeps_its_bound(text: str, bound: str) -> No
      (-0.0005, "current", "-500 \u00b5A"), (1e10, "resistance", "10 G\u03a9"), (24.4, "relative_humidity", "24 % RH"),
      (100, "relative_humidity", "100 % RH"), (21.04, "temperature", "21 \u00b0C"), (0, "temperature", "0 \u00b0C"),
      (90, "duration", "90 s"), (7200, "duration", "2.0 h"), (86400 * 3, "duration", "3.0 d"),
-     (5e-13, "capacitance", "5.0e-13 F")],
+     (5e-13, "capacitance", "5.0e-13 F"), (120, "duration", "2.0 min"), (119, "duration", "120 s"),
+     (7199, "duration", "120 min"), (172799, "duration", "48 h"), (3, "humidity_points", "3.0 points"),
+     (2, "temperature_difference", "2.0 K"), (2e-12, "capacitance", "2.0 pF"), (2e-9, "charge", "2.0 nC"),
+     (3e12, "resistance", "3.0 T\u03a9"), (99.7, "relative_humidity", "100 % RH"), (1e6, "frequency", "1.0 MHz")],
 )  # fmt: skip
 def test_a_value_is_printed_rounded_with_a_fitting_prefix(
     value: float | None, kind: str, text: str

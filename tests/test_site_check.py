@@ -32,6 +32,7 @@ def test_a_shipped_edition_may_be_chosen(check: str, edition: str) -> None:
         ("touch_current", "iso20345", "'iso20345' has no limit for touch_current; use "),
         ("touch_current", "nowhere-2030", "'nowhere-2030' has no limit"),
         ("touch_current", "unknown", "'nothing' has no limit"),
+        ("touch_current", "csa204-old", "'csa204-old' has no limit for touch_current"),
         ("isolated_alarm_test", "iec60364-7-710", "has no limit for isolated_alarm_test"),
         ("visual_inspection", "iec60601-1-ed3", "'visual_inspection' has no limit to choose"),
         ("toaster", "iec60601-1-ed3", "'toaster' has no limit to choose"),

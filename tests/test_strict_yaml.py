@@ -97,6 +97,9 @@ def test_size_has_a_bound_from_file_and_from_text(tmp_path: Path) -> None:
     with pytest.raises(BadRecord, match="larger than 1 MB"):
         read(large)
     assert "larger than 1 MB" in refusal("a: " + "x" * MOST_BYTES)
+    largest = "a: " + "x" * (MOST_BYTES - 3)
+    large.write_text(largest)
+    assert read(large).tree == parse(largest, "f").tree
 
 
 CONTROLS = [chr(n) for n in (*range(0x00, 0x09), 0x0B, 0x0C, *range(0x0E, 0x20), 0x7F, 0x80, 0x9F)]

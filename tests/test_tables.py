@@ -1,4 +1,5 @@
 import json
+import re
 from importlib.resources import files
 
 import pytest
@@ -65,6 +66,12 @@ def test_no_cell_of_a_table_was_silently_read_as_something_else(name: str) -> No
     numbers = [each for each in read if isinstance(each, int) and not isinstance(each, bool)]
     assert len(numbers) <= sum(each.lstrip("-").isdigit() for each in typed)
     assert not [each for each in typed if each.isdigit() and each.startswith("0") and each != "0"]
+    # 1e3 without point and sign stays text in YAML 1.1.
+    assert not [
+        each
+        for each in read
+        if isinstance(each, str) and re.fullmatch(r"[-+]?[\d.]+[eE][-+]?\d+", each)
+    ]
 
 
 @pytest.mark.parametrize("name", NAMES)

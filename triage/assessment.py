@@ -1,7 +1,5 @@
 """Everything concluded about one incident: calls the rooms, nothing else."""
 
-from dataclasses import dataclass
-
 from triage import __version__, conditions
 from triage.care import Care, care_for
 from triage.cautions import Caution, cautions_for
@@ -13,6 +11,7 @@ from triage.disposition import Gate, Inputs, ItemDisposition, Level, decide
 from triage.errors import InvalidValue
 from triage.evidence import Evidence, gather
 from triage.exposure import Exposure, estimate_exposure
+from triage.frozen import frozen
 from triage.incident import SCHEMA, Incident
 from triage.knowledge import knowledge
 from triage.next_checks import NextCheck, propose
@@ -25,7 +24,7 @@ from triage.told import Observed
 from triage.validity import CheckVerdict, judge_checks
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Assessment:
     """Everything concluded about one incident.
 

@@ -1,12 +1,12 @@
 """The person: what to arrange and what to watch for. Never medical advice to stay away."""
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from functools import cache
 
 from triage.citation import Citation
 from triage.errors import BadTable
 from triage.evidence import Evidence
+from triage.frozen import frozen
 from triage.incident import Incident
 from triage.involvement import is_powered
 from triage.tables import citation, table
@@ -23,7 +23,7 @@ _SENSATION_WORDS = {
 }  # fmt: skip
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class CareRow:
     """One action for the person, by what was found."""
 
@@ -35,7 +35,7 @@ class CareRow:
     citation: Citation
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Care:
     """What to arrange for the persons.
 

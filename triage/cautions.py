@@ -1,14 +1,14 @@
 """Which cautions belong to an outcome, and the words that no text of ours may use."""
 
 import re
-from dataclasses import dataclass
 from functools import cache
 
 from triage.citation import Citation
+from triage.frozen import frozen
 from triage.tables import citation, table
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Caution:
     """One caution."""
 

@@ -1,13 +1,13 @@
 """The table of checks: what each proves, who may do it, and which must pass before release."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
 from triage import words as w
 from triage.citation import Citation
 from triage.errors import BadTable
+from triage.frozen import frozen
 from triage.knowledge import knowledge
 from triage.quantity import parse
 from triage.tables import citation, table
@@ -16,7 +16,7 @@ PERFORMERS = ("any_staff", "biomedical", "licensed_electrician")
 _COUNTS = ("within_limit", "any_valid_value", "nothing_found")
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Accepts:
     """One accepted way of doing a check: method, supplies, whether a reading is needed."""
 
@@ -27,7 +27,7 @@ class Accepts:
     any_state: bool
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class LimitsFrom:
     """Which rows of the table of limits a value is held against.
 
@@ -44,7 +44,7 @@ class LimitsFrom:
     edition: str
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class CheckKind:
     """One kind of check.
 
@@ -89,7 +89,7 @@ class CheckKind:
     citation: Citation
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class MandatoryRow:
     """Checks demanded of some kinds of item on some supplies in some contacts."""
 

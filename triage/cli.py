@@ -61,8 +61,9 @@ def assess(
         import json as encoder
 
         from triage.documents.as_data import as_data
+        from triage.documents.summary import summarise
 
-        data = [as_data(each) for each in made]
+        data = [as_data(each, summarise(each)) for each in made]
         typer.echo(encoder.dumps(data, ensure_ascii=False, indent=1))
     else:
         from triage.documents.plain_text import plain_text

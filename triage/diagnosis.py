@@ -11,6 +11,7 @@ from dataclasses import dataclass
 
 from triage.evidence import Evidence
 from triage.exposure import Exposure
+from triage.frozen import frozen
 from triage.knowledge import Knowledge, knowledge
 from triage.site import Site
 from triage.told import Observed
@@ -32,7 +33,7 @@ class Weight:
     decibans: float
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Posterior:
     """The ranking.
 

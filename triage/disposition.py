@@ -6,17 +6,17 @@ reassuring; anything unknown or invalid keeps it shut.
 """
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 from enum import IntEnum
 
 from triage.check_table import cannot_be_released, check_kinds
 from triage.diagnosis import CONFLICT_BLOCKS, RESIDUAL, Posterior
 from triage.evidence import Defect, Evidence
 from triage.exposure import Exposure
+from triage.frozen import frozen
 from triage.incident import Incident, Item
 from triage.involvement import FIXED, required_checks
 from triage.knowledge import Cause, Finding, knowledge
-from triage.red_flags import Flag
+from triage.red_flags import Flag, would_clear
 from triage.release_gate import deciding_posterior, release_threshold, upper_mains
 from triage.site import Site
 from triage.told import Observed
@@ -38,7 +38,7 @@ _OF_THE_SUPPLY = frozenset({"outlet_test", "isolated_line_voltages", "isolated_a
 _LINKED_NEEDS = _OF_THE_SUPPLY | {"visual_inspection", "earth_continuity", "insulation_resistance"}
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Gate:
     """Whether static may be the disposition.
 
@@ -55,7 +55,7 @@ class Gate:
     threshold: float
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class ItemDisposition:
     """One item, outlet or circuit; item "" is the room.
 
@@ -72,7 +72,7 @@ class ItemDisposition:
     missing: tuple[str, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Inputs:
     """Everything the decision rests on."""
 
@@ -205,11 +205,13 @@ def _answers_shut(given: Inputs) -> Iterator[str]:
         if finding.id == "driven" or (finding.id == "monitor_alarm" and given.supply == "earthed"):
             continue
         seen = observed.get(finding.id)
+        if _settled(finding, given):
+            continue
         if seen is None and finding.id in given.evidence.answered:
             yield f"not reassuring: {finding.name}, something kept acting"
         elif seen is None:
             yield f"not known: {finding.name}"
-        elif finding.reassuring and not _acceptable(finding, seen.state, given):
+        elif finding.reassuring and seen.state not in finding.reassuring:
             yield f"not reassuring: {finding.name}, {seen.state.replace('_', ' ')}"
     if given.supply is None:
         yield "not known: earthed or isolated supply"
@@ -221,12 +223,17 @@ def _answers_shut(given: Inputs) -> Iterator[str]:
             yield f"not known: {name}"
 
 
-def _acceptable(finding: Finding, state: str, given: Inputs) -> bool:
-    """Reassuring, or adverse with every red flag that it raised cleared by checks."""
-    if state in finding.reassuring:
-        return True
-    raised = [f for f in given.flags if (finding.id, state) in f.flag.findings]
-    return bool(raised) and all(f.cleared for f in raised)
+def _settled(finding: Finding, given: Inputs) -> bool:
+    """Whether measured static answers for an adverse answer, and so for an unknown one too.
+
+    Unknown counts like adverse here: were only the adverse answer let through, not knowing would be
+    the worse answer of the two. It needs a flag that a measured charge clears ("others felt it").
+    """
+    flags = [f for f in knowledge().red_flags.values() if finding.id in dict(f.findings)]
+    return bool(flags) and all(
+        flag.measured and would_clear(flag, given.incident, given.evidence, given.supply)
+        for flag in flags
+    )
 
 
 _SURROUNDINGS = frozenset({"humidity", "ground_path"})

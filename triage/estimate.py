@@ -195,7 +195,7 @@ class Estimate:
         if median_threshold <= 0:
             return 1.0
         at, total = log(median_threshold), sqrt(2 * (self.spread**2 + spread**2))
-        if total < NARROW * sqrt(self.variance_log):
+        if total <= NARROW * sqrt(self.variance_log):
             return 1 - normal_cdf(_interpolated(at, _steps(self.nodes), 1, 0))
         return 0.5 * sum([w * erfc((at - x) / total) for w, x in self.nodes])
 
@@ -205,7 +205,7 @@ class Estimate:
         if len(self.logs) == 1:
             return exp(self.logs[0] + z * self.spread)
         spread = sqrt(self.variance_log)
-        if self.spread < NARROW * spread:
+        if self.spread <= NARROW * spread:
             return exp(_interpolated(z, _steps(self.nodes), 0, 1))
         return exp(self._solve(p, self.mean_log + z * spread))
 

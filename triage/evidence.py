@@ -6,9 +6,9 @@ and the others are kept beside it.
 """
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 from triage import words as w
+from triage.frozen import frozen
 from triage.incident import Check, Incident, Item
 from triage.involvement import involved, required_checks, speaks_about
 from triage.knowledge import knowledge
@@ -26,7 +26,7 @@ _THRESHOLDS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Defect:
     """Something shown to be defective, whatever the ranking says.
 
@@ -45,7 +45,7 @@ class Defect:
     source: Check | None = None
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Evidence:
     """Everything observed about one incident.
 

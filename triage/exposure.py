@@ -21,6 +21,7 @@ from triage.electrical_exposure import (
 )
 from triage.errors import InvalidValue
 from triage.fields import table
+from triage.frozen import frozen
 from triage.incident import Incident, Item, Supply
 from triage.involvement import involved, speaks_about
 from triage.knowledge import Knowledge, knowledge
@@ -71,7 +72,7 @@ class CauseExposure:
         return self.electrical.felt if self.electrical is not None else None
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Exposure:
     """Everything physically possible at one incident.
 
@@ -178,7 +179,11 @@ def _electrical(
     try:
         here = electrical_exposure(cause, told)
         weighed = [
-            electrical_exposure(cause, replace(each, moisture=each.moisture or "dry")).chance
+            # Shoes and floor are no part of the reference, and a contact left out of the story is
+            # its commonest mistake: they are shown and never speak against a mains cause.
+            electrical_exposure(
+                cause, replace(each, moisture=each.moisture or "dry", series=None)
+            ).chance
             for each in ((told, read) if void else (told,))
         ]
         # The priors of these causes were judged for an earthed supply and a direct return path.

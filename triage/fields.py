@@ -12,7 +12,7 @@ from typing import Any, TypeVar, dataclass_transform
 
 from triage import clock, quantity
 from triage.errors import BadRecord, InvalidValue
-from triage.strict_yaml import Plain
+from triage.strict_yaml import BAD_CHARACTERS, Plain
 
 T = TypeVar("T")
 
@@ -230,6 +230,9 @@ class Reader:
             )
             return None
         if is_unknown(raw):
+            return None
+        if bad := BAD_CHARACTERS.search(raw):
+            self.fault(path, f"control character U+{ord(bad[0]):04X} is not allowed")
             return None
         try:
             return self._scalar(row, raw, path)

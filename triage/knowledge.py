@@ -2,12 +2,12 @@
 
 import math
 from collections.abc import Mapping
-from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
 from triage.citation import Citation
 from triage.errors import BadTable
+from triage.frozen import frozen
 from triage.tables import citation, table
 
 MECHANISMS = ("static", "mains", "other")
@@ -20,7 +20,7 @@ FACTS = frozenset({
 """Facts of the record that a red flag may name beside findings and signs."""
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Cause:
     """One hypothesis that explains the complaint."""
 
@@ -40,7 +40,7 @@ class Cause:
     closing_check: str | None
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Finding:
     """One observable and how probable each of its states is under each cause.
 
@@ -63,7 +63,7 @@ class Finding:
     tempered: Mapping[str, Mapping[str, float]]
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Measured:
     """A measured value that a clearing rule asks for: check id and SI bound to exceed."""
 
@@ -71,7 +71,7 @@ class Measured:
     above: str
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class RedFlag:
     """One row of the closed table of red flags."""
 
@@ -88,7 +88,7 @@ class RedFlag:
     never: str
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Knowledge:
     """Everything judged about causes and findings."""
 

@@ -11,6 +11,7 @@ from typing import Any
 
 from triage.citation import Citation
 from triage.errors import BadTable, InvalidValue
+from triage.frozen import frozen
 from triage.quantity import parse
 from triage.tables import table
 
@@ -66,7 +67,7 @@ _WARNINGS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Edition:
     """One edition of one standard, which a site can name as the one in force.
 
@@ -136,7 +137,7 @@ class Limit:
         )
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Limits:
     """All rows and editions.
 

@@ -33,10 +33,10 @@ class Quantity:
     unit: str
     gsd: float
     citation: Citation
-    decades: float = 0.0
-    doubt_gsd: float = 1.0
+    decades: float
+    doubt_gsd: float
 
-    def estimate(self, name: str, what: str = "") -> Estimate:
+    def estimate(self, name: str, what: str) -> Estimate:
         """An estimate whose spread bears the given source name.
 
         Args:
@@ -44,7 +44,7 @@ class Quantity:
             what: the thing described, for the list of inputs.
         """
         note = f"{self.median:g} {self.unit}, times or divided by {self.gsd:g}".strip()
-        basis = {name: Basis(what or name, "default", note, self.citation)}
+        basis = {name: Basis(what, "default", note, self.citation)}
         return Estimate.lognormal(self.median, {name: log(self.gsd)}, self.unit, basis)
 
 

@@ -1,7 +1,6 @@
 """Materials: floors, footwear, casters, acts and objects, loaded and cross-checked once."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
 from functools import cache
 from math import log
 from typing import Any
@@ -10,6 +9,7 @@ from triage.bounds import Basis
 from triage.citation import Citation
 from triage.errors import BadTable, InvalidValue
 from triage.estimate import Estimate, product
+from triage.frozen import frozen
 from triage.material_rows import KINDS, Quantity, Row, read_quantity, read_response, read_row
 from triage.physics.charging import Mover
 from triage.physics.humidity import Humidity, Response, resistance_factor
@@ -22,7 +22,7 @@ ROW_TABLES = ("floors", "footwear", "casters", "acts", "seats", "garments", "bod
 """Tables that map a word to a row of quantities."""
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@frozen
 class Materials:
     """All tables; each maps a word to its row."""
 

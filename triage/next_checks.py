@@ -6,10 +6,10 @@ nobody is ever told to touch it again.
 
 import math
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
 
 from triage.check_table import CheckKind, check_kinds
 from triage.disposition import Inputs, ItemDisposition
+from triage.frozen import frozen
 from triage.incident import Item
 from triage.involvement import FIXED, OBJECTS, is_powered, item_supply
 from triage.knowledge import Finding, knowledge
@@ -26,7 +26,7 @@ _STATIC_ONLY = frozenset({"object_to_ground", "object_voltage_after_rolling", "s
                           "footwear_resistance"})  # fmt: skip
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class NextCheck:
     """One check proposed.
 

@@ -1,7 +1,6 @@
 """A record file read whole: the incident, its questions and its digest."""
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
@@ -9,13 +8,14 @@ from triage.canonical import canonical, case_number, digest
 from triage.clock import Moment
 from triage.errors import InvalidValue
 from triage.fields import Reader, table
+from triage.frozen import frozen
 from triage.incident import SCHEMA, Incident
 from triage.strict_yaml import Plain, parse, read
 
 _LISTS = ("persons", "statements", "items", "contacts", "checks")
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Record:
     """One incident as filed.
 

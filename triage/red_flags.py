@@ -4,9 +4,9 @@ Knows no probability, so that no prior can reach it. A cleared flag stays on the
 """
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 
 from triage.evidence import Evidence
+from triage.frozen import frozen
 from triage.incident import Incident, Item
 from triage.involvement import is_powered, item_supply, required_checks
 from triage.knowledge import Measured, RedFlag, knowledge
@@ -21,7 +21,7 @@ _ITEM_CONDITIONS = {
 }
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Flag:
     """One red flag standing on one incident.
 
@@ -113,6 +113,12 @@ def _scope(flag: RedFlag, incident: Incident, evidence: Evidence) -> tuple[Item,
         named = [item for each in doubted if (item := find_item(incident, each))]
         return tuple(named) or touched
     return touched
+
+
+def would_clear(flag: RedFlag, incident: Incident, evidence: Evidence, supply: str | None) -> bool:
+    """Whether the checks on record clear a flag on everything it reaches, raised or not."""
+    items = _scope(flag, incident, evidence)
+    return bool(items) and all(_cleared(flag, i, incident, evidence, supply) for i in items)
 
 
 def _missing(flag: RedFlag) -> str:

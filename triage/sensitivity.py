@@ -5,6 +5,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from triage.diagnosis import Posterior
+from triage.frozen import frozen
 from triage.knowledge import knowledge
 from triage.quadrature import normal_cdf
 from triage.told import Observed
@@ -22,7 +23,7 @@ class Range:
     high: float
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Sensitivity:
     """How firm the ranking is.
 

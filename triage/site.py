@@ -4,7 +4,6 @@ It may tighten and choose; it never loosens. What it changes is printed on every
 """
 
 import re
-from dataclasses import dataclass
 from pathlib import Path
 
 from triage import words as w
@@ -26,6 +25,7 @@ from triage.fields import (
     time,
     word,
 )
+from triage.frozen import frozen
 from triage.incident import SCHEMA
 from triage.quantity import Quantity
 from triage.strict_yaml import Plain, parse, read
@@ -176,7 +176,7 @@ class SiteFile(Part):
     approvals: tuple[Approval, ...] = parts("Approvals.", Approval)
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Site:
     """A site file as read.
 

@@ -7,6 +7,7 @@ from triage.bounds import Basis, Probability
 from triage.conditions import Conditions
 from triage.errors import InvalidValue
 from triage.estimate import Estimate
+from triage.frozen import frozen
 from triage.materials import load
 from triage.physics.charging import Charged, leaking, moving, quick_act
 from triage.physics.humidity import Humidity
@@ -19,7 +20,7 @@ _ROLLING_STEPS = 40
 _ACT_OF_ACTIVITY = {"handling_plastic": "slide_patient"}
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Measured:
     """Static measurements that replace assumptions; None where there is none.
 

@@ -13,9 +13,10 @@ from triage.errors import BadRecord, CannotRead
 
 MOST_BYTES = 1_000_000
 MOST_DEPTH = 20
-_BAD_CHARACTERS = re.compile(
+BAD_CHARACTERS = re.compile(
     "[\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x84\x86-\x9f\ud800-\udfff\ufffe\uffff]"
 )
+"""Control characters and half characters: no text of a record holds one."""
 
 
 @dataclass(slots=True)
@@ -79,7 +80,7 @@ def parse(text: str, name: str) -> Plain:
     if len(text) > MOST_BYTES:
         raise BadRecord([_too_large(name)])
     text = text.removeprefix("\ufeff")
-    bad = _BAD_CHARACTERS.search(text)
+    bad = BAD_CHARACTERS.search(text)
     if bad:
         line = text.count("\n", 0, bad.start()) + 1
         raise BadRecord([f"{name}:{line}: control character U+{ord(bad[0]):04X} is not allowed"])
@@ -127,7 +128,7 @@ class _Builder:
         if event.tag and event.tag != "!":
             self._refuse(event, f"tag '{event.tag}'; plain values only")
         # An escape such as "\0" in double quotes is a character only after parsing.
-        bad = _BAD_CHARACTERS.search(getattr(event, "value", ""))
+        bad = BAD_CHARACTERS.search(getattr(event, "value", ""))
         if bad:
             self._refuse(event, f"control character U+{ord(bad[0]):04X} is not allowed")
         if depth > MOST_DEPTH:

@@ -7,12 +7,13 @@ possible.
 """
 
 from collections.abc import Iterator
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from triage.check_table import Accepts, CheckKind, LimitsFrom, check_kinds
 from triage.citation import Citation
 from triage.clock import before
 from triage.errors import InvalidValue
+from triage.frozen import frozen
 from triage.incident import Check, Contact, Incident, Item
 from triage.limits import Limit, load_limits
 from triage.quantity import Quantity, parse
@@ -31,7 +32,7 @@ _NO_INSTRUMENT = frozenset({"monitor_log", "humidity_reading"})
 _WET_STATE_NEEDED = frozenset({"insulation_resistance", "touch_current"})
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class CheckVerdict:
     """One check judged.
 
@@ -70,7 +71,7 @@ def _repeated(failed: CheckVerdict, all_checks: tuple[CheckVerdict, ...], site: 
     """Whether a fail that does not count was repeated later with a result that does."""
     return failed.state == "invalid_fail" and any(
         each.kind is failed.kind
-        and each.check.of == failed.check.of
+        and (each.check.of, each.check.second) == (failed.check.of, failed.check.second)
         and each.state in ("valid_pass", "valid_fail", "informative")
         and not each.as_left
         and before(failed.check.at, each.check.at, site.zone) is True
@@ -89,14 +90,13 @@ def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:
     kind = check_kinds().get(check.kind or "")
     if kind is None:
         return CheckVerdict(check, None, "not_done", reasons=(_unknown_kind(check),))
-    if check.result == "not_practicable" and check.value is None:
-        return CheckVerdict(
-            check, kind, "not_practicable", reasons=(check.reason or "no reason given",)
-        )
     item = find_item(incident, check.of)
     value, problem = _value(check, kind)
     judgements = _held_against_limits(check, kind, item, value, site)
     outcome = _outcome(check, kind, value, judgements)
+    if check.result == "not_practicable" and outcome != "fail":
+        why = (check.reason or "no reason given",)
+        return CheckVerdict(check, kind, "not_practicable", reasons=why, value=value)
     if outcome is None:
         return CheckVerdict(check, kind, "not_done", reasons=_open(judgements), value=value)
     as_left = check.stage == "as_left"

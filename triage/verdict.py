@@ -5,6 +5,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 from triage.errors import InvalidValue
+from triage.frozen import frozen
 from triage.limits import Edition, Limit
 
 
@@ -22,7 +23,7 @@ class Comparison:
     margin: float | None
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Judgement:
     """A reading held against every applicable row of one edition.
 

@@ -213,7 +213,8 @@ def _flags(a: Assessment) -> Iterator[str]:
     for each in a.flags:
         state = "cleared" if each.cleared else "stands"
         where = ", ".join(item_name(a.incident, i) for i in each.items) or "the place"
-        yield f"{each.flag.name}, {state}: {each.because}; {where}. {each.missing.capitalize()}."
+        clearing = each.missing[0].upper() + each.missing[1:]
+        yield f"{each.flag.name}, {state}: {each.because}; {where}. {clearing}."
 
 
 def _why(a: Assessment) -> list[Block]:

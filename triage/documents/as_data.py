@@ -4,14 +4,17 @@ from typing import Any
 
 from triage.assessment import Assessment
 from triage.documents.sources import sources
-from triage.documents.summary import summarise
+from triage.documents.summary import Summary
 from triage.estimate import Estimate
 from triage.exposure import CauseExposure
 
 
-def as_data(a: Assessment) -> dict[str, Any]:
-    """Conclusions with full digits beside the words; the same order as the printed page."""
-    s = summarise(a)
+def as_data(a: Assessment, s: Summary) -> dict[str, Any]:
+    """Conclusions with full digits beside the words; the same order as the printed page.
+
+    Args:
+        a: the assessment. s: its summary.
+    """
     return {
         "schema": a.schema,
         "case": a.record.case,

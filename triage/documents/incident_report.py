@@ -19,14 +19,13 @@ _MOST = {"causes": 4, "estimates": 3, "unknown": 3, "checks": 4, "cautions": 2, 
 _QUOTE = 120
 
 
-def context(a: Assessment, *, page_one_only: bool = False) -> dict[str, Any]:
+def context(a: Assessment, s: Summary, *, page_one_only: bool = False) -> dict[str, Any]:
     """Everything the template may name, worded and rounded.
 
     Args:
-        a: the assessment.
+        a: the assessment. s: its summary.
         page_one_only: leave the other parts out.
     """
-    s = summarise(a)
     file = a.site.file
     state = "final" if a.incident.outcome.confirmed_cause else "preliminary"
     parts = [] if page_one_only else _parts(a, s)
@@ -218,8 +217,9 @@ def write_report(a: Assessment, target: Path, *, page_one_only: bool = False) ->
 
     from triage.canonical import canonical
 
-    made = context(a, page_one_only=page_one_only)
-    data = json.dumps(as_data(a), ensure_ascii=False, indent=1, sort_keys=True).encode()
+    s = summarise(a)
+    made = context(a, s, page_one_only=page_one_only)
+    data = json.dumps(as_data(a, s), ensure_ascii=False, indent=1, sort_keys=True).encode()
     attached = [
         Attachment("record.json", canonical(a.record.tree), "The record in canonical form"),
         Attachment("assessment.json", data, "The assessment as data"),

@@ -3,8 +3,6 @@
 One wording for page one, the terminal and every short form.
 """
 
-from dataclasses import dataclass
-
 from triage.assessment import Assessment, named_conflicts
 from triage.check_table import PERFORMERS
 from triage.disposition import Level
@@ -22,6 +20,7 @@ from triage.documents.wording import (
     percent_range,
     room_line,
 )
+from triage.frozen import frozen
 from triage.incident import Statement
 from triage.knowledge import knowledge
 from triage.materials import load
@@ -44,7 +43,7 @@ METHOD_NOTE = (
 )
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class ItemLine:
     """One item: name, defects found, severity 1 to 4, what happens to it, why."""
 
@@ -55,7 +54,7 @@ class ItemLine:
     why: str
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class CauseLine:
     """One ranked cause: name, in words, range."""
 
@@ -64,7 +63,7 @@ class CauseLine:
     range: str
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class EstimateLine:
     """One estimate: what, middle, range, what it rests on."""
 
@@ -74,7 +73,7 @@ class EstimateLine:
     rests_on: str
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Summary:
     """Everything page one and the terminal print, worded and rounded."""
 
