@@ -31,11 +31,8 @@ from wording_rules import power_off_imperatives
 
 import triage.assessment
 import triage.care
-import triage.diagnosis
 import triage.disposition
-import triage.evidence
-import triage.red_flags
-import triage.release_gate
+import triage.told
 import triage.validity
 from triage.assessment import Assessment, assess
 from triage.care import URGENCY
@@ -181,7 +178,7 @@ def _failed_device() -> Tree:
 
 _BROKEN_BY: dict[str, Callable[[], tuple[Tree, tuple[int, Any]]]] = {
     "an unknown answer leaves the gate open": lambda: _change(
-        clean_tree(random.Random(1), "device"), "sensation", "unknown"
+        clean_tree(random.Random(1), "device", measured=True), "sensation", "unknown"
     ),
     "red flags carry no floor": lambda: _change(
         clean_tree(random.Random(2), "device"), "signs", ["burn"]
@@ -318,7 +315,7 @@ def test_a_pass_that_does_not_count_never_stands_in_for_a_mandatory_one(story, w
 
 def test_the_property_of_worthless_passes_notices_a_program_that_counts_them(monkeypatch):
     monkeypatch.setattr(triage.validity, "_away_from_event", lambda *_: iter(()))
-    tree = clean_tree(random.Random(5), "device")
+    tree = clean_tree(random.Random(5), "device", measured=True)
     dropped = tree["checks"].pop(0)
     tree["checks"].append(dropped | {"same_cord": "no"})
     assert judged(tree).gate.open
@@ -397,8 +394,8 @@ def test_names_of_parts_change_no_conclusion(chunk):
 
 def test_the_property_of_order_notices_a_program_that_takes_the_first_item(monkeypatch):
     monkeypatch.setattr(
-        triage.evidence, "_touched_state",
-        lambda touched: triage.evidence._touched_one(touched[0]) if touched else None,
+        triage.told, "_touched_state",
+        lambda touched: triage.told._touched_one(touched[0]) if touched else None,
     )  # fmt: skip
     differ = [
         tree for rng, tree in trees(60)

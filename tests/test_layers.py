@@ -23,6 +23,7 @@ ROWS = [
     {"electrical_tables", "knowledge", "limits", "material_rows", "static_limits"},
     {"materials", "verdict"},
     {"check_table"},
+    {"in_force"},
     {"validity"},
     {"site_check", "involvement", "logs"},
     {"told"},

@@ -21,7 +21,8 @@ from pypdf import PdfReader
 from triage import typeset
 from triage.errors import InvalidValue, MissingLibrary
 from triage.paths import templates
-from triage.render import Attachment, RenderedPdf, render_html, render_pdf, visible
+from triage.render import Attachment, RenderedPdf, render_html, render_pdf
+from triage.visible import visible
 
 RECORD = Attachment("incident.yaml", b"schema: 1\n", "the record")
 HOSTILE = (

@@ -102,9 +102,11 @@ def test_a_static_truth_with_a_complete_clean_set_is_let_go(measured, capsys):
         print(f"\nstatic measured: {measured}; let go {let_go:.0%} of {total} static truths")
         for area, share in found.items():
             worst = "; ".join(f"{n} {text}" for text, n in share.shut_by.most_common(4))
-            print(f"  {area}: {share.of_unflagged:.0%} of {share.unflagged}"
-                  f" ({share.truths - share.unflagged} of {share.truths} flagged or unsure,"
-                  f" {share.severe} severe); {worst}")
+            print(
+                f"  {area}: {share.of_unflagged:.0%} of {share.unflagged}"
+                f" ({share.truths - share.unflagged} of {share.truths} flagged or unsure,"
+                f" {share.severe} severe); {worst}"
+            )
     assert let_go >= (0.85 if measured else 0.75)
     assert all(share.severe <= 0.10 * share.truths for share in found.values())
 

@@ -5,7 +5,7 @@ import re
 _IMPERATIVE = re.compile(
     r"(?<![\w-])(isolate|switch (?:it |them |the \w+ )?off|turn (?:it |the \w+ )?off|unplug|withdraw"
     r"|disconnect|power (?:it |the \w+ )?(?:off|down)|de-?energi[sz]e"
-    r"|pull (?:out )?(?:the|its|that) plug|take (?:it |the \w+ )?out of use)(?![\w-])",
+    r"|pull (?:out )?(?:the|its|that) plug|take (?:it |the \w+ )?out of use)(?![\w-]|\s+nothing)",
     re.IGNORECASE,
 )
 _CONDITION = re.compile(

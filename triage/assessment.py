@@ -8,14 +8,14 @@ from triage.clock import Moment
 from triage.diagnosis import CONFLICT_NAMED, Posterior, diagnose, does_not_fit, prior
 from triage.diagnosis import counted as findings_counted
 from triage.disposition import Gate, Inputs, ItemDisposition, Level, decide
-from triage.errors import InvalidValue
+from triage.errors import BadRecord
 from triage.evidence import Evidence, gather
 from triage.exposure import Exposure, estimate_exposure
 from triage.frozen import frozen
 from triage.incident import SCHEMA, Incident
 from triage.knowledge import knowledge
 from triage.next_checks import NextCheck, propose
-from triage.record import Record, moments
+from triage.record import Record, clock_faults, moments
 from triage.red_flags import Flag, raise_flags
 from triage.sensitivity import Sensitivity, ranges
 from triage.site import Site
@@ -90,7 +90,13 @@ def assess(record: Record, site: Site, at: Moment | None = None) -> Assessment:
         record: as filed.
         site: the site file, or `triage.site.no_site()`.
         at: time the assessment speaks for; by default the latest time in the record.
+
+    Raises:
+        BadRecord: a time that a clock change of the site's zone doubles or skips.
     """
+    faults = clock_faults(record, site.zone)
+    if faults:
+        raise BadRecord(faults)
     incident = record.incident
     supply = conditions.supply_kind(incident, site)
     verdicts = judge_checks(incident, site)
@@ -113,12 +119,7 @@ def assess(record: Record, site: Site, at: Moment | None = None) -> Assessment:
 
 def latest(incident: Incident, site: Site) -> Moment | None:
     """The latest time in a record."""
-    ended = []
-    for each in moments(incident):
-        try:
-            ended.append((each.interval(site.zone)[1], each.text, each))
-        except InvalidValue:
-            continue  # a time that a clock change doubles or skips; it is asked about elsewhere
+    ended = [(each.interval(site.zone)[1], each.text, each) for _, each in moments(incident)]
     return max(ended)[2] if ended else None
 
 

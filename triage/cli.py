@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from triage.errors import TriageError
+from triage.visible import visible
 
 if TYPE_CHECKING:
     from triage.assessment import Assessment
@@ -34,16 +35,20 @@ SiteFile = Annotated[
 @app.command()
 def check(files: Files, site: SiteFile = None) -> None:
     """Validate records only: every fault at once, then questions."""
-    _site(site)
-    bad = 0
+    from triage.record import clock_faults
+
+    zone, bad = _site(site).zone, 0
     for path in files:
         record = _record(path)
-        if record is None:
+        faults = clock_faults(record, zone) if record else []
+        for fault in faults:
+            _complain(TriageError(fault))
+        if record is None or faults:
             bad += 1
             continue
         typer.echo(f"{path}: readable, case {record.case}")
         for question in record.questions:
-            typer.echo(f"{path}: please confirm: {question}")
+            typer.echo(visible(f"{path}: please confirm: {question}"))
     raise typer.Exit(BAD_INPUT if bad else 0)
 
 
@@ -166,7 +171,7 @@ def _assessed(files: list[Path], site: "Site") -> "list[Assessment | None]":
 
 def _complain(error: TriageError, where: str = "") -> None:
     for line in str(error).splitlines():
-        typer.echo(f"triage: {where + ': ' if where else ''}{line}", err=True)
+        typer.echo(visible(f"triage: {where + ': ' if where else ''}{line}"), err=True)
 
 
 def _status(found: "list[Assessment | None]") -> int:

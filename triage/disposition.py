@@ -20,7 +20,7 @@ from triage.red_flags import Flag, would_clear
 from triage.release_gate import deciding_posterior, release_threshold, upper_mains
 from triage.site import Site
 from triage.told import Observed
-from triage.validity import CheckVerdict, covers
+from triage.validity import CheckVerdict, covers, through_cord
 
 
 class Level(IntEnum):
@@ -302,10 +302,9 @@ def _shares(defect: Defect, item: Item, given: Inputs) -> bool:
     """Whether a defect is an item's own, its tested cord's, or of no named item."""
     if defect.item is None:
         return item in given.evidence.touched
-    of_cord = item.kind == "cord" and defect.source is not None
-    return defect.item == item.id or bool(
-        of_cord and defect.source and covers(defect.source, item, given.incident)
-    )
+    if defect.item == item.id:
+        return True
+    return defect.source is not None and through_cord(defect.source, item, given.incident)
 
 
 def _defect_floor(check: str, item: Item) -> Level:

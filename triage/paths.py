@@ -1,6 +1,5 @@
 """Where the package's own files lie, in an installed wheel and in a checkout."""
 
-from importlib.resources import files
 from pathlib import Path
 
 
@@ -13,5 +12,6 @@ def templates() -> Path:
     >>> (templates() / "layout.html").is_file()
     True
     """
-    inside = Path(str(files("triage"))) / "templates"
-    return inside if inside.is_dir() else Path(__file__).resolve().parent.parent / "templates"
+    package = Path(__file__).resolve().parent
+    inside = package / "templates"
+    return inside if inside.is_dir() else package.parent / "templates"

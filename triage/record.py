@@ -150,14 +150,25 @@ def _several_answers(incident: Incident) -> Iterator[tuple[str, str, tuple[str, 
         yield f"checks[{number}].disturbed", "none", check.disturbed
 
 
-def moments(part: Any) -> Iterator[Moment]:
-    """Every time in a record or part of one."""
+def moments(part: Any, path: str = "") -> Iterator[tuple[str, Moment]]:
+    """Every time in a record or part of one, with its path."""
     for name, row in table(type(part)):
-        value = getattr(part, name)
-        if isinstance(value, Moment):
-            yield value
+        found, below = getattr(part, name), f"{path}.{name}" if path else name
+        if isinstance(found, Moment):
+            yield below, found
         elif row.kind == "part":
-            yield from moments(value)
+            yield from moments(found, below)
         elif row.kind == "parts":
-            for each in value:
-                yield from moments(each)
+            for number, each in enumerate(found):
+                yield from moments(each, f"{below}[{number}]")
+
+
+def clock_faults(record: Record, zone: str) -> list[str]:
+    """Times that a clock change of the zone doubles or skips, each with its path."""
+    faults = []
+    for path, moment in moments(record.incident):
+        try:
+            moment.interval(zone)
+        except InvalidValue as error:
+            faults.append(f"{record.name}: {path}: {error}")
+    return faults

@@ -4,15 +4,14 @@ One file meets two standards: PDF/A-3 level A (ISO 19005-3) for the archive and 
 (ISO 14289-1) for reading aloud.
 """
 
-import re
-import unicodedata
+import os
 from collections.abc import Mapping
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from functools import cache
 from typing import Any
 
-from jinja2 import Environment, FileSystemLoader, StrictUndefined
+from jinja2 import Environment, FileSystemBytecodeCache, FileSystemLoader, StrictUndefined
 from markupsafe import Markup
 
 from triage.paths import templates
@@ -25,13 +24,10 @@ from triage.typeset import (
     own_files,
     weasyprint,
 )
+from triage.visible import code, visible
 
 ATTACHED = datetime(2000, 1, 1, tzinfo=UTC)
 """Date written on every attachment: fixed, so that two renders are the same bytes."""
-
-MARKS_IN_A_ROW = 3
-"""Combining marks left on one letter; judgement: no orthography needs more, a stack of forty
-paints over the lines above."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -129,41 +125,27 @@ def _attached(each: Attachment) -> Any:
 # --- text ---------------------------------------------------------------------------------------
 
 
+def _compiled() -> FileSystemBytecodeCache | None:
+    """Compiled templates beside the templates, where the place allows it."""
+    folder = templates() / "__pycache__"
+    try:
+        folder.mkdir(exist_ok=True)
+    except OSError:
+        return None
+    return FileSystemBytecodeCache(str(folder)) if os.access(folder, os.W_OK) else None
+
+
 @cache
 def _environment() -> Environment:
     return Environment(
         loader=FileSystemLoader(templates()),
+        bytecode_cache=_compiled(),
         autoescape=True,
         undefined=StrictUndefined,
         finalize=_finalize,
         trim_blocks=True,
         lstrip_blocks=True,
     )
-
-
-_PILE = re.compile(f"(?<=[\u0300-\u036f]{{{MARKS_IN_A_ROW}}})[\u0300-\u036f]+")
-_QUIET = re.compile("[\n\t\u00a0\u2009\u202f]")  # common, harmless, yet not "printable"
-_ACTS = frozenset({"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"})
-_ALLOWED = frozenset("\n\t\u200c\u200d")  # the joiners shape Persian and Indic words
-
-
-def visible(typed: str) -> str:
-    """Typed text with everything that could act, instead of being read, shown as its code.
-
-    Args:
-        typed: any text; line ends of any system.
-
-    Returns:
-        The text with control, direction and private characters as [U+202E], and a pile of
-        combining marks cut after three, its first cut mark and their number in its place.
-
-    >>> visible("no fault\u202e")
-    'no fault[U+202E]'
-    """
-    text = _PILE.sub(_pile, typed.replace("\r\n", "\n"))
-    if _QUIET.sub("", text).isprintable():
-        return text
-    return "".join(_code(each) if _may_act(each) else each for each in text)
 
 
 def _finalize(value: object) -> object:
@@ -173,19 +155,7 @@ def _finalize(value: object) -> object:
     return visible(value) if isinstance(value, str) else value
 
 
-def _pile(found: re.Match[str]) -> str:
-    return f"{_code(found[0][0])}×{len(found[0])}"
-
-
-def _may_act(character: str) -> bool:
-    return character not in _ALLOWED and unicodedata.category(character) in _ACTS
-
-
-def _code(character: str) -> str:
-    return f"[U+{ord(character):04X}]"
-
-
 def _mark_uncovered(html: str) -> tuple[str, tuple[str, ...]]:
     """Print a character without a glyph as its code: PDF/A-3 forbids the empty box."""
     missing = tuple(sorted(set(html) - covered() - {"\n", "\t", "\r"}))
-    return html.translate({ord(each): _code(each) for each in missing}), missing
+    return html.translate({ord(each): code(each) for each in missing}), missing

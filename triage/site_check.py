@@ -9,12 +9,12 @@ from collections.abc import Iterator
 from triage.check_table import CheckKind, check_kinds
 from triage.errors import InvalidValue
 from triage.fields import table as rows_of
+from triage.in_force import is_stricter
 from triage.knowledge import knowledge
 from triage.limits import Limit, load_limits
 from triage.quantity import parse
 from triage.site import Edition, Raised, Site, Tightened
 from triage.tables import table
-from triage.validity import is_stricter
 
 
 def site_faults(site: Site) -> list[str]:

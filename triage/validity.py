@@ -9,16 +9,16 @@ possible.
 from collections.abc import Iterator
 from dataclasses import replace
 
-from triage.check_table import Accepts, CheckKind, LimitsFrom, check_kinds
-from triage.citation import Citation
+from triage.check_table import Accepts, CheckKind, check_kinds
 from triage.clock import before
 from triage.errors import InvalidValue
 from triage.frozen import frozen
+from triage.in_force import held_against_limits, limits_from
 from triage.incident import Check, Contact, Incident, Item
-from triage.limits import Limit, load_limits
+from triage.limits import Limit
 from triage.quantity import Quantity, parse
 from triage.site import Site
-from triage.verdict import Judgement, judge
+from triage.verdict import Judgement
 
 DESTROYING = frozenset({"cleaned", "cord_swapped", "repaired"})
 """Changes after which a pass says nothing about the event."""
@@ -92,7 +92,7 @@ def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:
         return CheckVerdict(check, None, "not_done", reasons=(_unknown_kind(check),))
     item = find_item(incident, check.of)
     value, problem = _value(check, kind)
-    judgements = _held_against_limits(check, kind, item, value, site)
+    judgements = held_against_limits(check, kind, item=item, value=value, site=site)
     outcome = _outcome(check, kind, value, judgements)
     if check.result == "not_practicable" and outcome != "fail":
         why = (check.reason or "no reason given",)
@@ -101,7 +101,7 @@ def judge_check(check: Check, incident: Incident, site: Site) -> CheckVerdict:
         return CheckVerdict(check, kind, "not_done", reasons=_open(judgements), value=value)
     as_left = check.stage == "as_left"
     doubts = tuple(_doubts(check, kind, item, incident, site)) + ((problem,) if problem else ())
-    if not judgements and value is not None and _limits_from(check, kind) is not None:
+    if not judgements and value is not None and limits_from(check, kind) is not None:
         doubts += ("no limit on file fits this item, method and state",)
     away = tuple(_away_from_event(check, kind, item, incident, site))
     state = _state(kind, outcome, bool(doubts), bool(away))
@@ -155,73 +155,6 @@ def _value(check: Check, kind: CheckKind) -> tuple[Quantity | None, str | None]:
     return value, None
 
 
-def _held_against_limits(
-    check: Check, kind: CheckKind, item: Item | None, value: Quantity | None, site: Site
-) -> tuple[Judgement, ...]:
-    """The value against the edition in force; nothing where there is no value or no row."""
-    source = _limits_from(check, kind)
-    if source is None or value is None or value.value < 0:
-        return ()
-    chosen = next((e.edition for e in site.file.editions if e.check == kind.id and e.edition), None)
-    rows = _rows(check, item, source=source, edition=chosen, quantity=value.kind) or _rows(
-        check, item, source=source, edition=source.edition, quantity=value.kind
-    )
-    sign = value.text[0] if value.text[0] in "≤≥" else value.bound
-    return judge(value.value, sign, tuple(tightened(row, site) for row in rows))
-
-
-def _limits_from(check: Check, kind: CheckKind) -> LimitsFrom | None:
-    return next((each for each in kind.limits_from if check.method in each.methods), None)
-
-
-def _rows(
-    check: Check, item: Item | None, *, source: LimitsFrom, edition: str | None, quantity: str
-) -> tuple[Limit, ...]:
-    """Rows of one edition for a check; none for an edition that is not on file."""
-    if edition not in load_limits().editions:
-        return ()
-    return load_limits().find(
-        check=source.check,
-        edition=edition,
-        condition=_condition(check),
-        equipment_class=item.equipment_class
-        if item and item.equipment_class != "internal"
-        else None,
-        part=item.applied_part if item and item.applied_part != "none" else None,
-        method=source.method,
-        kind=quantity,
-    )
-
-
-def tightened(limit: Limit, site: Site) -> Limit:
-    """A limit as the site file makes it stricter; the shipped one where it does not.
-
-    Args:
-        limit: a shipped row.
-        site: its `tightened` names limits by id; a looser or unreadable value changes nothing.
-    """
-    typed = next((each.value for each in site.file.tightened if each.limit == limit.id), None)
-    try:
-        value = parse(typed or "", limit.kind)
-    except InvalidValue:
-        return limit
-    if value.bound or not is_stricter(value.value, limit):
-        return limit
-    cited = Citation(f"site file, stricter than {limit.text} of {limit.edition.text()}")
-    return replace(limit, value=value.value, text=value.text, citation=cited, disputed=False)
-
-
-def is_stricter(value: float, limit: Limit) -> bool:
-    """Whether a value in SI, above 0, leaves less room than a shipped limit."""
-    return 0 < value < limit.value if limit.sense == "max" else value > limit.value
-
-
-def _condition(check: Check) -> str | None:
-    if "earth_open" in check.state:
-        return "open_earth"
-    return "open_neutral" if "neutral_open" in check.state else None
-
-
 def _outcome(
     check: Check, kind: CheckKind, value: Quantity | None, judgements: tuple[Judgement, ...]
 ) -> str | None:
@@ -270,9 +203,11 @@ def _away_from_event(
     """Why a pass does not speak about the event."""
     if check.unit_disputed == "yes":
         yield "the unit is in doubt"
-    if check.stage == "as_left":
-        return
     accepted = next((each for each in kind.accepts if each.method == check.method), None)
+    if check.stage == "as_left":
+        if item is not None and not (accepted and accepted.any_state):
+            yield from _power_reasons(check, kind, item)
+        return
     yield from _set_reasons(check, item)
     yield from _disturbance_reasons(check, item, incident, site)
     if item is not None and not (accepted and accepted.any_state):
@@ -349,12 +284,16 @@ def _disturbance_reasons(
 def _item_state_reasons(
     check: Check, kind: CheckKind, item: Item, incident: Incident
 ) -> Iterator[str]:
+    yield from _power_reasons(check, kind, item)
+    if kind.id in _WET_STATE_NEEDED and is_wet(incident, item) and "wet" not in check.state:
+        yield "the event was wet and the check was not made in that state"
+
+
+def _power_reasons(check: Check, kind: CheckKind, item: Item) -> Iterator[str]:
     if kind.state_as_event:
         needed = _STATE_OF_POWER.get(item.power or "", "on" if item.power is None else "")
         if needed and needed not in check.state:
             yield f"the item was not in the state of the event ({needed})"
-    if kind.id in _WET_STATE_NEEDED and is_wet(incident, item) and "wet" not in check.state:
-        yield "the event was wet and the check was not made in that state"
 
 
 def _listed(words: frozenset[str] | set[str]) -> str:
@@ -372,13 +311,20 @@ def covers(check: Check, item: Item, incident: Incident) -> bool:
         return True
     if check.kind in _OF_THE_OUTLET:
         return check.of is not None and check.of in (item.outlet, item.circuit)
+    return check.same_cord == "yes" and through_cord(check, item, incident)
+
+
+def through_cord(check: Check, item: Item, incident: Incident) -> bool:
+    """Whether an item is the cord of what was checked, in a check that goes through a cord.
+
+    A fail reaches that cord whether or not it was surely the one used; a pass needs `covers`.
+    """
     tested = find_item(incident, check.of)
     return (
         item.kind == "cord"
         and check.kind in _WITH_THE_CORD
         and tested is not None
         and tested.cord == item.id
-        and check.same_cord == "yes"
     )
 
 

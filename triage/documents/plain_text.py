@@ -8,6 +8,7 @@ from triage.documents.sources import source_lines
 from triage.documents.summary import Summary, summarise
 from triage.documents.wording import LEVEL_NAME
 from triage.knowledge import knowledge
+from triage.visible import visible
 
 WIDTH = 78
 
@@ -25,7 +26,7 @@ def plain_text(a: Assessment, *, why: bool = False) -> str:
         lines += [title, *body, ""]
     if why:
         lines += [line for title, body in _why(a) for line in (title, *body, "")]
-    return "\n".join(lines).rstrip() + "\n"
+    return visible("\n".join(lines).rstrip()) + "\n"
 
 
 def _sections(a: Assessment, s: Summary) -> Iterator[tuple[str, list[str]]]:
