@@ -10,7 +10,7 @@ import triage
 
 PACKAGE = Path(triage.__file__).parent
 ROWS = [
-    {"errors", "frozen", "paths"},
+    {"errors", "frozen", "paths", "visible"},
     {"citation"},
     {"canonical", "clock", "quadrature", "quantity", "strict_yaml"},
     {"bounds", "grid"},
@@ -30,6 +30,7 @@ ROWS = [
     {"evidence"},
     {"conditions"},
     {"electrical_exposure", "static_exposure"},
+    {"electrical_story"},
     {"exposure"},
     {"red_flags", "diagnosis"},
     {"sensitivity"},

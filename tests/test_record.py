@@ -138,7 +138,7 @@ def test_microamperes_on_an_isolation_monitor_are_asked_about() -> None:
 
 def test_every_time_of_a_record_is_found_wherever_it_stands() -> None:
     record = loads(text(spoiled({"entries": [{"at": "2026-01-15 08:00"}]})))
-    assert {each.text for each in moments(record.incident)} == {
+    assert {each.text for _, each in moments(record.incident)} == {
         "2026-01-14 07:20", "2026-09-01", "2026-01-14 09:00", "2026-01-15 08:00",
     }  # fmt: skip
 

@@ -10,7 +10,6 @@ from typing import Any
 
 from triage import conditions as c
 from triage.bounds import Ceiling, Probability
-from triage.clock import before
 from triage.conditions import Conditions
 from triage.electrical_exposure import (
     ELECTRICAL_CAUSES,
@@ -19,10 +18,10 @@ from triage.electrical_exposure import (
     ceiling,
     electrical_exposure,
 )
+from triage.electrical_story import electrical_story, void_reasons
 from triage.errors import InvalidValue
-from triage.fields import table
 from triage.frozen import frozen
-from triage.incident import Incident, Item, Supply
+from triage.incident import Incident
 from triage.involvement import involved, speaks_about
 from triage.knowledge import Knowledge, knowledge
 from triage.physics.humidity import Humidity
@@ -34,15 +33,12 @@ from triage.static_exposure import (
     static_exposure,
     story,
 )
-from triage.validity import CheckVerdict, find_item
+from triage.validity import CheckVerdict
 
-_MEDICAL = frozenset({"device_mains", "device_battery", "electrosurgical_unit", "bed", "table",
-                      "stimulator_defibrillator", "pole", "stand", "instrument"})  # fmt: skip
 _WIDEST = Conditions(
     Humidity(0.35, 0.12), "not known: heating season taken, 35 % with a doubt of 12 points",
     None, None, None, None, None, None, 0.0, False, 0.0, None, (),
 )  # fmt: skip
-_FLOOR_RESISTANCE = {"conductive": 1e6, "dissipative": 1e9}
 
 
 @dataclass(frozen=True, slots=True)
@@ -108,9 +104,9 @@ def estimate_exposure(
     about = tuple(v for v in verdicts if speaks_about(v, touched, incident))
     measured = _measured(about)
     causes = {name: _static(name, found, measured, reference, k) for name in STATIC_CAUSES}
-    read = _electrical_story(incident, found, touched, about)
+    read = electrical_story(incident, found, touched, about)
     monitored = read.hazard_current is not None or read.insulation is not None
-    void = tuple(_void(incident, site)) if monitored else ()
+    void = tuple(void_reasons(incident, site)) if monitored else ()
     causes |= {name: _electrical(name, read, bool(void), found, k) for name in ELECTRICAL_CAUSES}
     for cause in k.causes:
         causes.setdefault(cause, CauseExposure(cause, None, None, 1.0))
@@ -199,87 +195,6 @@ def _clipped(here: float, there: float, bounds: tuple[float, float]) -> float:
     if there <= 0:
         return 1.0 if here <= 0 else high
     return min(max(here / there, low), high)
-
-
-def _electrical_story(
-    incident: Incident, found: Conditions, touched: tuple[Item, ...],
-    verdicts: tuple[CheckVerdict, ...],
-) -> ElectricalStory:  # fmt: skip
-    """The circumstances of the contact, with the monitor's reading whether it binds or not."""
-    current, insulation = incident.supply.current_reading, incident.supply.resistance_reading
-    return ElectricalStory(
-        found.voltage,
-        found.frequency,
-        any(item.kind in _MEDICAL or item.kind is None for item in touched) or not touched,
-        _moisture(incident),
-        _series(incident, found),
-        current.value if current and not current.bound else None,
-        insulation.value if insulation and not insulation.bound else None,
-        _valid_reading(verdicts, "two_metal_voltage"),
-        # With the earth closed the reading says nothing about the same item with its earth open.
-        _valid_reading(tuple(v for v in verdicts if "earth_open" in v.check.state),
-                       "touch_current"),
-        found.isolated is True and all(item.supply != "earthed" for item in touched),
-    )  # fmt: skip
-
-
-def _void(incident: Incident, site: Site) -> list[str]:
-    """Why the monitor's reading binds nothing at the time of the event."""
-    supply, reasons = incident.supply, []
-    reasons += [f"{text} is unusual and its unit may be wrong" for text in _unusual(incident)]
-    if supply.changed_since != "no":
-        known = "was" if supply.changed_since == "yes" else "may have been"
-        reasons.append(f"something {known} plugged or unplugged before it was read")
-    if supply.read_at is None:
-        reasons.append("it is not known when it was read")
-    elif before(supply.read_at, incident.event.at, site.zone) is True:
-        reasons.append("it was read before the event")
-    for contact in incident.contacts:
-        items = [find_item(incident, each) for each in contact.items]
-        if any(i is not None and i.supply == "earthed" for i in items):
-            reasons.append("an item was on an earthed supply")
-        if any(i is not None and i.kind in ("cord", "outlet", "adapter_strip") for i in items):
-            reasons.append("both lines may have been touched at a cord, plug or outlet")
-    return reasons
-
-
-def _unusual(incident: Incident) -> list[str]:
-    """Monitor readings outside their plausible range."""
-    rows, found = dict(table(Supply)), []
-    for name in ("current_reading", "resistance_reading"):
-        reading, usual = getattr(incident.supply, name), rows[name].plausible
-        if reading and usual and not usual[0] <= reading.value <= usual[1]:
-            found.append(reading.text)
-    return found
-
-
-def _moisture(incident: Incident) -> str | None:
-    """Dry, or the severe end for anything wet; not known stays None and is shown as severe."""
-    found = {contact.moisture for contact in incident.contacts}
-    if found & {"damp", "wet"}:
-        return "saltwater"
-    return "dry" if found == {"dry"} else None
-
-
-def _series(incident: Incident, found: Conditions) -> float | None:
-    """Shoes and floor in the path only when it is known that nothing else was touched."""
-    contacts = incident.contacts
-    alone = contacts and all(c.also_touching == "nothing" and len(c.items) < 2 for c in contacts)
-    if not alone or found.footwear is None or found.floor is None:
-        return None
-    if found.floor in _FLOOR_RESISTANCE and found.footwear in ("esd", "antistatic"):
-        return _FLOOR_RESISTANCE[found.floor]
-    return 1e8 if found.footwear in ("esd", "antistatic", "leather") else 1e10
-
-
-def _valid_reading(verdicts: tuple[CheckVerdict, ...], kind: str) -> float | None:
-    values = [
-        v.value.value
-        for v in verdicts
-        if v.kind and v.kind.id == kind and v.state in ("valid_pass", "valid_fail")
-        and not v.as_left and v.value and v.value.bound != "<" and v.value.value > 0
-    ]  # fmt: skip
-    return max(values, default=None)
 
 
 def _plausible(causes: Mapping[str, CauseExposure], k: Knowledge) -> bool | None:
