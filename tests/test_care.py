@@ -77,6 +77,8 @@ def test_no_row_advises_anybody_to_stay_away_from_a_clinician():
             assert phrase not in text
 
 
-@pytest.mark.parametrize(("near", "shown"), [("oxygen", True), ("wet_alcohol", True), ("none", False)])
+@pytest.mark.parametrize(
+    ("near", "shown"), [("oxygen", True), ("wet_alcohol", True), ("none", False)]
+)
 def test_a_spark_near_vapour_or_oxygen_is_shown_as_an_ignition_matter(near, shown):
     assert care(scene={"flammable": [near]}).ignition is shown

@@ -69,9 +69,8 @@ def mechanism(cause: str) -> str:
 
 
 def truth_mechanism(case: dict[str, Any]) -> str:
-    return case["truth"] if case["truth"] in ("static", "mains", "other") else mechanism(
-        case["truth"]
-    )  # fmt: skip
+    truth = str(case["truth"])
+    return truth if truth in ("static", "mains", "other", "unsettled") else mechanism(truth)
 
 
 def only_a_defect(case: dict[str, Any], a: Assessment) -> bool:
@@ -105,9 +104,11 @@ def test_the_figures_over_all_cases(capsys):
     first = [mechanism(a.posterior.ranked[0]) in c["first"] for c, a in found]
     among = [
         truth_mechanism(c) in {mechanism(x) for x in a.posterior.ranked[:3]}
-        if c["truth"] in ("static", "mains", "other") else c["truth"] in a.posterior.ranked[:3]
-        or truth_mechanism(c) in {mechanism(x) for x in a.posterior.ranked[:3]}
-        for c, a in found
+        for c, a in found if c["truth"] != "unsettled"
+    ]  # fmt: skip
+    exact = [
+        c["truth"] in a.posterior.ranked[:3]
+        for c, a in found if c["truth"] in knowledge().causes
     ]  # fmt: skip
     static = [(c, a) for c, a in found if truth_mechanism(c) == "static"]
     complete = [a for c, a in static if c.get("complete")]
@@ -116,10 +117,13 @@ def test_the_figures_over_all_cases(capsys):
     severe = [a.headline >= Level.WITHDRAW for c, a in static if "withdraw" not in c["accept"]]
     let_go = sum(a.headline == Level.STATIC_CONTROLS for a in complete)
     with capsys.disabled():
-        print(f"\n{len(CASES)} cases. safety: defensible first rank {sum(first)}/{len(first)}, "
-              f"true family among the first three {sum(among)}/{len(among)}, useful check "
-              f"{sum(useful)}/{len(useful)}; usefulness: {let_go}/{len(complete)} complete "
-              f"static truths let go, {sum(severe)}/{len(severe)} severe")
+        print(
+            f"\n{len(CASES)} cases. safety: defensible first rank {sum(first)}/{len(first)}, "
+            f"true family among the first three {sum(among)}/{len(among)}, the very "
+            f"cause {sum(exact)}/{len(exact)}, useful check "
+            f"{sum(useful)}/{len(useful)}; usefulness: {let_go}/{len(complete)} complete "
+            f"static truths let go, {sum(severe)}/{len(severe)} severe"
+        )
         for (c, a), good in zip(found, first, strict=True):
             if not good:
                 print(f"  {c['id']}: first {a.posterior.ranked[:3]}")
