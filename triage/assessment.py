@@ -15,7 +15,7 @@ from triage.frozen import frozen
 from triage.incident import SCHEMA, Incident
 from triage.knowledge import knowledge
 from triage.next_checks import NextCheck, propose
-from triage.record import Record, clock_faults, moments
+from triage.record import Record, clock_faults
 from triage.red_flags import Flag, raise_flags
 from triage.sensitivity import Sensitivity, ranges
 from triage.site import Site
@@ -109,7 +109,7 @@ def assess(record: Record, site: Site, at: Moment | None = None) -> Assessment:
     gate, items, room = decide(given)
     observed = findings_counted(evidence, exposure)
     return Assessment(
-        record, site, at or latest(incident, site), evidence, exposure, posterior,
+        record, site, at or latest(record, site), evidence, exposure, posterior,
         ranges(posterior, observed), flags, gate, items, room,
         care_for(incident, evidence), propose(given, items),
         cautions_for(_caution_words(given, gate)), _unknown(given),
@@ -117,9 +117,9 @@ def assess(record: Record, site: Site, at: Moment | None = None) -> Assessment:
     )  # fmt: skip
 
 
-def latest(incident: Incident, site: Site) -> Moment | None:
+def latest(record: Record, site: Site) -> Moment | None:
     """The latest time in a record."""
-    ended = [(each.interval(site.zone)[1], each.text, each) for _, each in moments(incident)]
+    ended = [(each.interval(site.zone)[1], each.text, each) for _, each in record.moments]
     return max(ended)[2] if ended else None
 
 

@@ -6,8 +6,9 @@ wrong; measured the likelihood of instruments and logs, with a floor under joint
 """
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from operator import mul
 
 from triage.evidence import Evidence
 from triage.exposure import Exposure
@@ -155,8 +156,13 @@ def _row(observed: Observed, causes: tuple[str, ...]) -> tuple[float, ...]:
 def evaluate(case: Case, without: str | None = None) -> tuple[float, ...]:
     """P(cause), over causes; `without` leaves one finding out."""
     k = knowledge()
-    story = _story(case, without, k)
-    readings = _readings(case, without)
+    return _posterior(case, _story(case, without, k), _readings(case, without), k)
+
+
+def _posterior(
+    case: Case, story: Sequence[float], readings: Sequence[float], k: Knowledge
+) -> tuple[float, ...]:
+    """Story with its allowance, times what was measured, normalised."""
     raw = [
         ((1 - k.wrong_story) * s + k.wrong_story * p) * math.exp(m)
         for s, p, m in zip(story, case.prior, readings, strict=True)
@@ -167,28 +173,33 @@ def evaluate(case: Case, without: str | None = None) -> tuple[float, ...]:
 
 def _story(case: Case, without: str | None, k: Knowledge) -> list[float]:
     """q: prior, physics and what was told, normalised."""
-    logs = list(case.log_factor)
-    for group in _group_sums(case, without).values():
-        lowest = max(group) - k.cap_log
-        for i, value in enumerate(group):
-            logs[i] += max(value, lowest)
+    sums = _group_sums(case, without)
+    return _mixed(case, [_capped(sums[group], k) for group in sorted(sums)])
+
+
+def _mixed(case: Case, groups: Iterable[list[float]]) -> list[float]:
+    """Prior times physics times the groups of told answers, normalised."""
+    logs = [math.fsum(each) for each in zip(case.log_factor, *groups, strict=True)]
     top = max(logs)
     raw = [p * math.exp(x - top) for p, x in zip(case.prior, logs, strict=True)]
     total = math.fsum(raw)
     return [each / total for each in raw]
 
 
+def _capped(group: list[float], k: Knowledge) -> list[float]:
+    """A group's sum, no cause further below the best than the cap."""
+    lowest = max(group) - k.cap_log
+    return [each if each > lowest else lowest for each in group]
+
+
 def _group_sums(case: Case, without: str | None) -> dict[str, list[float]]:
-    sums: dict[str, list[float]] = {}
+    rows: dict[str, list[tuple[float, ...]]] = {}
     for finding in sorted(case.told):
-        if finding == without:
-            continue
-        row, group = case.told[finding], case.groups[finding]
-        if group not in sums:
-            sums[group] = list(row)
-        else:
-            sums[group] = [a + b for a, b in zip(sums[group], row, strict=True)]
-    return sums
+        if finding != without:
+            rows.setdefault(case.groups[finding], []).append(case.told[finding])
+    return {
+        group: [sum(each) for each in zip(*found, strict=True)] for group, found in rows.items()
+    }
 
 
 def _readings(case: Case, without: str | None) -> list[float]:
@@ -261,7 +272,7 @@ def weigh(case: Case, observed: Sequence[Observed], pair: tuple[str, str]) -> tu
         row = case.measured if each.measured else case.told
         lines.append((f"{each.finding.name}: {each.state}", between(row[each.finding.id])))
     sums = _group_sums(case, None).values()
-    cap = sum(between([max(x, max(g) - k.cap_log) for x in g]) - between(g) for g in sums)
+    cap = sum(between(_capped(g, k)) - between(g) for g in sums)
     story, readings = _story(case, None, k), _readings(case, None)
     mixed = [
         (1 - k.wrong_story) * s + k.wrong_story * p for s, p in zip(story, case.prior, strict=True)
@@ -283,14 +294,33 @@ def _positive(value: float) -> float:
 
 def conflicts(case: Case, observed: Sequence[Observed]) -> dict[str, float]:
     """For each finding log10 of P(finding) over P(finding | all others); positive pulls apart."""
-    found = {}
+    k, found = knowledge(), {}
+    sums = _group_sums(case, None)
+    capped = {group: _capped(found_, k) for group, found_ in sums.items()}
+    story, readings = _mixed(case, [capped[g] for g in sorted(capped)]), _readings(case, None)
     for each in observed:
-        row = (case.measured if each.measured else case.told)[each.finding.id]
-        alone = math.fsum(p * math.exp(x) for p, x in zip(case.prior, row, strict=True))
-        others = evaluate(case, each.finding.id)
-        given = math.fsum(p * math.exp(x) for p, x in zip(others, row, strict=True))
-        found[each.finding.id] = math.log10(alone / given)
+        name = each.finding.id
+        if each.measured:
+            row = case.measured[name]
+            others = _posterior(case, story, _readings(case, name), k)
+        else:
+            row = case.told[name]
+            rest = {g: x for g, x in capped.items() if g != case.groups[name]}
+            changed = rest | _without(case, name, k)
+            others = _posterior(
+                case, _mixed(case, [changed[g] for g in sorted(changed)]), readings, k
+            )
+        likely = [math.exp(x) for x in row]
+        alone = math.fsum(map(mul, case.prior, likely))
+        found[name] = math.log10(alone / math.fsum(map(mul, others, likely)))
     return found
+
+
+def _without(case: Case, finding: str, k: Knowledge) -> dict[str, list[float]]:
+    """The capped sum of a finding's group without it; empty where it stood alone."""
+    group = case.groups[finding]
+    rows = [case.told[f] for f in sorted(case.told) if case.groups[f] == group and f != finding]
+    return {group: _capped([sum(x) for x in zip(*rows, strict=True)], k)} if rows else {}
 
 
 def does_not_fit(posterior: Posterior, observed: Sequence[Observed]) -> tuple[Observed, ...]:

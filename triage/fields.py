@@ -6,7 +6,7 @@ validation, the printed field guide and every form. Unknown, blank and left out 
 
 import dataclasses
 import re
-from collections.abc import Iterator, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Any, TypeVar, dataclass_transform
 
@@ -167,11 +167,18 @@ def part(help: str, of: type) -> Any:
     return _entry(Field("part", help, of=of))
 
 
-def table(record_class: type) -> Iterator[tuple[str, Field]]:
+_tables: dict[type, tuple[tuple[str, Field], ...]] = {}
+
+
+def table(record_class: type) -> tuple[tuple[str, Field], ...]:
     """Name and row of every field of a record class, in order."""
-    for each in dataclasses.fields(record_class):
-        if "field" in each.metadata:
-            yield each.name, each.metadata["field"]
+    if record_class not in _tables:
+        _tables[record_class] = tuple(
+            (each.name, each.metadata["field"])
+            for each in dataclasses.fields(record_class)
+            if "field" in each.metadata
+        )
+    return _tables[record_class]
 
 
 class Reader:

@@ -26,6 +26,7 @@ class Record:
         tree: what was typed, for storing and attaching.
         questions: implausible values and contradictions that stay visible.
         name: file name, for messages.
+        moments: every time in it, with its path.
     """
 
     incident: Incident
@@ -34,6 +35,7 @@ class Record:
     tree: Any
     questions: tuple[str, ...]
     name: str
+    moments: tuple[tuple[str, Moment], ...] = ()
 
 
 def load(path: Path) -> Record:
@@ -79,6 +81,7 @@ def from_plain(plain: Plain) -> Record:
         plain.tree,
         tuple(reader.questions),
         plain.name,
+        tuple(moments(incident)),
     )
 
 
@@ -166,7 +169,7 @@ def moments(part: Any, path: str = "") -> Iterator[tuple[str, Moment]]:
 def clock_faults(record: Record, zone: str) -> list[str]:
     """Times that a clock change of the zone doubles or skips, each with its path."""
     faults = []
-    for path, moment in moments(record.incident):
+    for path, moment in record.moments:
         try:
             moment.interval(zone)
         except InvalidValue as error:
