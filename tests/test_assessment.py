@@ -28,7 +28,7 @@ def test_it_names_digest_of_knowledge_version_and_schema():
 def test_it_speaks_for_the_latest_time_in_the_record():
     found = record(clean_tree(random.Random(2), "cart"))
     a = assess(found, no_site())
-    assert a.at == latest(found.incident, no_site())
+    assert a.at == latest(found, no_site())
     assert a.at is not None and a.at.text.startswith("2027-01-01")
 
 

@@ -14,12 +14,14 @@ from triage.exposure import Exposure, estimate_exposure
 from triage.frozen import frozen
 from triage.incident import SCHEMA, Incident
 from triage.knowledge import knowledge
+from triage.look_back import LookBackLine, look_back
 from triage.next_checks import NextCheck, propose
 from triage.record import Record, clock_faults
 from triage.red_flags import Flag, raise_flags
 from triage.sensitivity import Sensitivity, ranges
 from triage.site import Site
 from triage.tables import knowledge_digest
+from triage.testimony import Testimony, testimony
 from triage.told import Observed
 from triage.validity import CheckVerdict, judge_checks
 
@@ -37,6 +39,8 @@ class Assessment:
         care: the persons. next_checks: what to check, in order. cautions: what to print with it.
         unknown: what is not known and would matter, in words.
         misfits: answers that the leading cause almost never gives.
+        testimony: the ranking with each of several disagreeing statements.
+        look_back: questions that a confirmed defect opens, with their answers.
         knowledge, version, schema: what it was made with.
     """
 
@@ -56,6 +60,8 @@ class Assessment:
     cautions: tuple[Caution, ...]
     unknown: tuple[str, ...]
     misfits: tuple[Observed, ...]
+    testimony: Testimony
+    look_back: tuple[LookBackLine, ...]
     knowledge: str
     version: str
     schema: str
@@ -113,7 +119,9 @@ def assess(record: Record, site: Site, at: Moment | None = None) -> Assessment:
         ranges(posterior, observed), flags, gate, items, room,
         care_for(incident, evidence), propose(given, items),
         cautions_for(_caution_words(given, gate)), _unknown(given),
-        does_not_fit(posterior, observed), knowledge_digest(), __version__, SCHEMA,
+        does_not_fit(posterior, observed),
+        testimony(incident, evidence, priors, exposure, supply),
+        look_back(incident, evidence), knowledge_digest(), __version__, SCHEMA,
     )  # fmt: skip
 
 

@@ -1,6 +1,7 @@
 """The commands: parse, call one function, print. Heavy imports stay inside the command."""
 
 import sys
+from io import TextIOWrapper
 from pathlib import Path
 from typing import TYPE_CHECKING, Annotated
 
@@ -46,7 +47,7 @@ def check(files: Files, site: SiteFile = None) -> None:
         if record is None or faults:
             bad += 1
             continue
-        typer.echo(f"{path}: readable, case {record.case}")
+        typer.echo(visible(f"{path}: readable, case {record.case}"))
         for question in record.questions:
             typer.echo(visible(f"{path}: please confirm: {question}"))
     raise typer.Exit(BAD_INPUT if bad else 0)
@@ -63,13 +64,10 @@ def assess(
     found = list(_assessed(files, _site(site)))
     made = [each for each in found if each is not None]
     if json:
-        import json as encoder
-
-        from triage.documents.as_data import as_data
+        from triage.documents.as_data import as_data, as_json
         from triage.documents.summary import summarise
 
-        data = [as_data(each, summarise(each)) for each in made]
-        typer.echo(encoder.dumps(data, ensure_ascii=False, indent=1))
+        typer.echo(as_json([as_data(each, summarise(each)) for each in made]))
     else:
         from triage.documents.plain_text import plain_text
 
@@ -87,19 +85,27 @@ def report(
     """Write the incident report for the risk office, one PDF for each record."""
     from triage.documents.incident_report import write_report
 
-    chosen = _site(site)
+    targets = _targets(files, out)
     found = []
-    for path, each in zip(files, _assessed(files, chosen), strict=True):
+    for target, each in zip(targets, _assessed(files, _site(site)), strict=True):
         found.append(each)
         if each is not None:
-            single = out.suffix.lower() == ".pdf"
-            if single and len(files) > 1:
-                raise typer.BadParameter("name a folder for several records", param_hint="-o")
-            target = out if single else out / f"{path.stem}.pdf"
             for note in write_report(each, target, page_one_only=page_one):
-                typer.echo(f"{target}: {note}", err=True)
-            typer.echo(f"{target}")
+                typer.echo(visible(f"{target}: {note}"), err=True)
+            typer.echo(visible(f"{target}"))
     raise typer.Exit(_status(found))
+
+
+def _targets(files: list[Path], out: Path) -> list[Path]:
+    """A PDF for each record; none is written over another."""
+    if out.suffix.lower() == ".pdf":
+        if len(files) > 1:
+            raise typer.BadParameter("name a folder for several records", param_hint="-o")
+        return [out]
+    targets = [out / f"{path.stem}.pdf" for path in files]
+    if len(set(targets)) < len(targets):
+        raise typer.BadParameter("two records have the same file name; rename one")
+    return targets
 
 
 @app.command()
@@ -117,7 +123,7 @@ def blank(
     except OSError as error:
         reason = error.strerror or "cannot be written"
         raise CannotWrite(f"{out}: {reason}; name a new file in a folder of yours") from None
-    typer.echo(f"{out}")
+    typer.echo(visible(f"{out}"))
 
 
 @app.command()
@@ -126,6 +132,49 @@ def fields() -> None:
     from triage.documents.field_guide import field_guide
 
     typer.echo(field_guide(), nl=False)
+
+
+@app.command()
+def sources(
+    known: Annotated[
+        str | None,
+        typer.Option("--known", help="Only those: published, memory or judgement.",
+                     show_default=False),
+    ] = None,
+) -> None:
+    """Print every number the program can print, with its source and how it is known."""
+    from triage.documents.all_sources import as_lines
+
+    typer.echo("\n".join(as_lines(known)))
+
+
+@app.command()
+def explain(
+    file: Annotated[Path, typer.Argument(help="Incident record, YAML.", show_default=False)],
+    name: Annotated[
+        str | None, typer.Argument(help="Such as person_walking.voltage.", show_default=False)
+    ] = None,
+    site: SiteFile = None,
+) -> None:
+    """Unfold one estimate of a record to its inputs; without a name, list what there is."""
+    from triage.documents.explain import explain as unfold
+    from triage.documents.explain import names
+
+    for found in _assessed([file], _site(site)):
+        if found is None:
+            raise typer.Exit(BAD_INPUT)
+        typer.echo(visible("\n".join(unfold(found, name) if name else names(found))))
+
+
+@app.command()
+def walking(
+    file: Annotated[Path, typer.Argument(help="CSV: time in s, voltage in V.", show_default=False)],
+) -> None:
+    """Find the peaks of a recorded walking test, and print what to enter in the record."""
+    from triage.documents.walking import walking_lines
+    from triage.walking_file import read
+
+    typer.echo(visible("\n".join(walking_lines(read(file)))))
 
 
 def _site(path: Path | None) -> "Site":
@@ -185,6 +234,9 @@ def _status(found: "list[Assessment | None]") -> int:
 
 def main() -> None:
     """Run the command line; a known error is one message and exit status 1."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):  # a terminal without µ or Ω still gets its lines
+            stream.reconfigure(errors="backslashreplace")
     if sys.argv[1:] == ["--version"]:
         from triage import __version__
 

@@ -8,7 +8,8 @@ from dataclasses import dataclass
 from triage.clock import hours_between
 from triage.errors import OutOfRange
 from triage.incident import Incident, Item
-from triage.involvement import OBJECTS
+from triage.involvement import OBJECTS, is_powered
+from triage.physics.capacitance import plate_over_floor
 from triage.physics.humidity import Humidity, transfer_doubt, transferred
 from triage.quantity import parse
 from triage.site import Site
@@ -17,8 +18,37 @@ from triage.tables import table
 NEAR_SD, FAR_SD = 0.03, 0.08
 """Doubt of a humidity read in the room within the hour, and of any other (fraction, judgement)."""
 _SENSOR_SDS = (0.02, 0.5, 1.0)  # humidity as a fraction, temperature at sensor, at place [K]
-_OBJECT_CAPACITANCE = {"cart": "cart", "stool": "stool", "bed": "bed", "table": "table",
-                       "pole": "pole", "stand": "stand"}  # fmt: skip
+_INSULATING_CASTERS = frozenset({"rubber", "nylon"})
+_LIES_ON = frozenset({"bed", "table", "person"})
+
+
+@dataclass(frozen=True, slots=True)
+class Touch:
+    """What a static discharge needs to know of act, bodies and contact; hashable.
+
+    Args:
+        act: quick act, a row of the table of acts.
+        pushing: a cart was pushed and something else was touched.
+        lying: somebody or something lying on what was touched was slid.
+        posture: row of bodies where it does not follow from the shoes.
+        farads: capacitance of the touched object [F], None for that of its kind.
+        farads_from: measured or geometry.
+        floats: the touched object has no path to earth within the time of a spark.
+        earthed: the person touched earthed metal or a wet floor at the same time.
+        held_metal: the spark went to metal held in the hand.
+        plastic: a plastic sheet, film or screen was there to be charged.
+    """
+
+    act: str = "rise"
+    pushing: bool = False
+    lying: bool = False
+    posture: str | None = None
+    farads: float | None = None
+    farads_from: str = ""
+    floats: bool | None = None
+    earthed: bool = False
+    held_metal: bool = False
+    plastic: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,6 +63,7 @@ class Conditions:
         object_kind: kind of object on wheels that was touched.
         voltage, frequency: of the supply [V, Hz]. isolated: True, False or not known.
         defaults: which of these came from the site file.
+        touch: act, bodies and contact of the discharge.
     """
 
     humidity: Humidity | None
@@ -48,6 +79,7 @@ class Conditions:
     frequency: float
     isolated: bool | None
     defaults: tuple[str, ...]
+    touch: Touch = Touch()
 
 
 def resolve(incident: Incident, site: Site, touched: tuple[Item, ...]) -> Conditions:
@@ -71,8 +103,64 @@ def resolve(incident: Incident, site: Site, touched: tuple[Item, ...]) -> Condit
         humidity, text, found["floor"], found["footwear"], found["casters"],
         incident.event.steps, pause.value if pause else None, rolling,
         voltage, known, frequency, None if supply is None else supply == "isolated",
-        tuple(defaults),
+        tuple(defaults), touch_of(incident, touched),
     )  # fmt: skip
+
+
+def touch_of(incident: Incident, touched: tuple[Item, ...]) -> Touch:
+    """Act, bodies and contact of the discharge.
+
+    Args:
+        incident: the record.
+        touched: what was touched; with no contact on record everything.
+    """
+    contacts, activity = incident.contacts, incident.event.activity
+    objects = [i for i in touched if i.kind in OBJECTS]
+    lying = any(i.kind in _LIES_ON for i in touched) or any(
+        c.also_touching == "patient" for c in contacts
+    )
+    farads, source = _capacitance(objects)
+    patients = bool(incident.persons) and all(p.who == "patient" for p in incident.persons)
+    return Touch(
+        act=_act(activity, lying),
+        pushing=activity == "pushing_cart" and bool(contacts) and not objects,
+        lying=lying,
+        posture="seated" if patients and activity not in ("walking", "pushing_cart") else None,
+        farads=farads,
+        farads_from=source,
+        floats=_floats(objects) if len(objects) == len(touched) else None,
+        earthed=any(c.also_touching in ("earthed_metal", "wet_floor") for c in contacts),
+        held_metal=bool(contacts) and all(c.covering == "held_metal" for c in contacts),
+        plastic=any(i.kind == "plastic_item" for i in incident.items),
+    )
+
+
+def _act(activity: str | None, lying: bool) -> str:
+    """The quick act; rising charges more than undressing and stands for both."""
+    if activity != "handling_plastic":
+        return "rise"
+    return "slide_patient" if lying else "wipe_plastic"
+
+
+def _capacitance(objects: list[Item]) -> tuple[float | None, str]:
+    """Capacitance of the one object touched: measured, or from its size."""
+    if len(objects) != 1:
+        return None, ""
+    only = objects[0]
+    if only.capacitance and not only.capacitance.bound:
+        return only.capacitance.value, "measured"
+    sizes = [each for each in (only.length, only.width, only.clearance) if each and not each.bound]
+    if len(sizes) < 3:
+        return None, ""
+    length, width, clearance = (each.value for each in sizes)
+    return plate_over_floor(length * width, clearance), "geometry"
+
+
+def _floats(objects: list[Item]) -> bool | None:
+    """Whether what was touched stands on insulating wheels without any supply."""
+    if not objects or any(is_powered(i) or i.casters is None for i in objects):
+        return None
+    return all(i.casters in _INSULATING_CASTERS for i in objects)
 
 
 def supply_kind(incident: Incident, site: Site) -> str | None:

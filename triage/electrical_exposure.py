@@ -2,7 +2,7 @@
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache, lru_cache
 
 from triage.bounds import Basis, Ceiling, Probability
@@ -11,8 +11,15 @@ from triage.errors import BadTable
 from triage.estimate import Estimate, through
 from triage.physics.body_impedance import floor_series, hazard_floor, severe_impedance
 from triage.physics.monitors import ceiling_from_hazard, ceiling_from_insulation
+from triage.physics.networks import weight
 from triage.physics.perception import threshold
-from triage.physics.touch_current import Mains, insulation_fault, open_earth, shunt
+from triage.physics.touch_current import (
+    Mains,
+    contact_spark,
+    insulation_fault,
+    open_earth,
+    shunt,
+)
 from triage.physics.zones import zone
 from triage.quadrature import normal_cdf
 from triage.quantity import parse
@@ -41,6 +48,7 @@ class ElectricalStory:
         metal_voltage: measured between the two metals, loaded [V].
         touch_current: measured at the item, valid [A].
         isolated: the contact was on an isolated supply: one line drives what the system leaks.
+        area: small for a dry bare fingertip; None for the large contact, the severe end.
     """
 
     voltage: float
@@ -53,37 +61,114 @@ class ElectricalStory:
     metal_voltage: float | None = None
     touch_current: float | None = None
     isolated: bool = False
+    area: str | None = None
 
 
 @dataclass(frozen=True, slots=True)
 class ElectricalExposure:
-    """One mains cause: the current through the person and the chance that it is felt."""
+    """One mains cause of one contact; its numbers are computed when they are asked for.
 
-    current: Estimate
-    chance: float
+    Args:
+        cause: one of `ELECTRICAL_CAUSES`. told: the circumstances.
+        duration: of the contact [s], None if not known. path: through the body, None if not known.
+    """
+
+    cause: str
+    told: ElectricalStory
+    duration: float | None = None
+    path: str | None = None
+
+    @property
+    def current(self) -> Estimate:
+        """Current through the person [A]."""
+        return touch_current(self.cause, self.told)
 
     @property
     def felt(self) -> Probability:
-        """The chance with P(felt) at the 5 % and 95 % points of the current."""
-        low, high = (_chance(math.log(each)) for each in self.current.interval())
-        return Probability(self.chance, low, high, self.current.basis)
+        """Whether it could be felt, with the chance at the 5 and 95 % points of the current."""
+        low, high = (
+            _chance(math.log(each), self.told.frequency) for each in self.current.interval()
+        )
+        return Probability(felt_chance(self.cause, self.told), low, high, self.current.basis)
+
+    @property
+    def must_be_felt(self) -> float:
+        """Chance by the curve of a firm grip: below it somebody may well have felt nothing."""
+        median, spread, _ = threshold("grip")
+        return self.current.probit(median / _weight(self.told.frequency), spread)
+
+    @property
+    def worst(self) -> float:
+        """Current of the worst credible case [A]: 95 % point, large contact, no shoes or floor."""
+        severe = replace(self.told, series=None, area=None)
+        return touch_current(self.cause, severe).quantile(0.95)
 
     @property
     def zone(self) -> str:
-        """Zone of the worst credible case: high current, unknown duration and path."""
-        return zone(self.current.quantile(0.95), None, None)
+        """Zone of the worst credible case; duration and path not known take the severe end."""
+        return zone(self.worst, self.duration, self.path)
 
 
 @lru_cache(maxsize=4096)
-def electrical_exposure(cause: str, told: ElectricalStory) -> ElectricalExposure:
-    """Touch current of one cause.
+def touch_current(cause: str, told: ElectricalStory) -> Estimate:
+    """Current through the person under one cause [A].
 
     Args:
         cause: one of `ELECTRICAL_CAUSES`.
         told: the circumstances.
     """
-    current = (_ISOLATED if told.isolated else _CURRENTS)[cause](told)
-    return ElectricalExposure(current, max(current.probit(m, s) for m, s in _curves()))
+    return (_ISOLATED if told.isolated else _CURRENTS)[cause](told)
+
+
+@lru_cache(maxsize=4096)
+def felt_chance(cause: str, told: ElectricalStory) -> float:
+    """Chance that it could be felt: the curve that feels more easily decides.
+
+    Args:
+        cause: one of `ELECTRICAL_CAUSES`.
+        told: the circumstances.
+    """
+    current, heavier = touch_current(cause, told), _weight(told.frequency)
+    return max(current.probit(m / heavier, s) for m, s in _curves())
+
+
+@dataclass(frozen=True, slots=True)
+class ChassisSpark:
+    """What a case with an open earth discharges at the first contact, at most (at the crest).
+
+    Args:
+        voltage: crest [V].
+        charge, energy: into a person joined to earth [C, J].
+        through_shoes: charge into a person on shoes and floor of this story [C]; None where
+            those are not in the path.
+    """
+
+    voltage: float
+    charge: Estimate
+    energy: Estimate
+    through_shoes: Estimate | None
+
+
+def chassis_spark(told: ElectricalStory) -> ChassisSpark:
+    """The contact spark of a floating case on an earthed supply; on an isolated one the most.
+
+    Args:
+        told: supply and kind of item.
+    """
+    mains, filters = Mains(told.voltage, told.frequency), _filter(told)
+    leak = shunt(None, filters.median, mains)
+    spark = contact_spark(open_earth(mains, leak, leak), mains)
+    charge = filters.scaled(spark.charge / filters.median, "C")
+    energy = filters.scaled(spark.energy / filters.median, "J")
+    if told.series is None:
+        return ChassisSpark(spark.voltage, charge, energy, None)
+    # The filter and the soles in series; the soles' resistance is far too large to matter.
+    soles = parse(_row("footwear_capacitance")["median"], "capacitance").value
+    shared = through(
+        lambda log_charge: log_charge - math.log1p(math.exp(log_charge) / spark.voltage / soles),
+        charge, unit="C",
+    )  # fmt: skip
+    return ChassisSpark(spark.voltage, charge, energy, shared)
 
 
 def ceiling(told: ElectricalStory, void: tuple[str, ...]) -> Ceiling | None:
@@ -108,9 +193,15 @@ def _curves() -> tuple[tuple[float, float], ...]:
     return tuple(threshold(curve)[:2] for curve in _CURVES)
 
 
-def _chance(log_current: float) -> float:
+def _chance(log_current: float, frequency: float) -> float:
     """P(felt) at one current, ln A."""
-    return max(normal_cdf((log_current - math.log(m)) / s) for m, s in _curves())
+    log_weighted = log_current + math.log(_weight(frequency))
+    return max(normal_cdf((log_weighted - math.log(m)) / s) for m, s in _curves())
+
+
+def _weight(frequency: float) -> float:
+    """How much of a current counts for feeling it; above 100 Hz less than all."""
+    return weight(frequency, "reaction") if frequency > 100 else 1.0
 
 
 @cache
@@ -157,7 +248,7 @@ def _row(name: str) -> dict[str, str]:
 
 def _body(told: ElectricalStory) -> Estimate:
     """Impedance of the body; the severe end for what is not known."""
-    found = severe_impedance(told.voltage, contact=None, moisture=told.moisture)
+    found = severe_impedance(told.voltage, contact=told.area, moisture=told.moisture)
     sigma = found.sigma
     basis = {"body_impedance": Basis("impedance of the body", "default")}
     return Estimate.lognormal(found.median, {"body_impedance": sigma}, "ohm", basis)
@@ -178,8 +269,12 @@ def _open_earth(told: ElectricalStory) -> Estimate:
         leak = shunt(None, math.exp(log_capacitance), mains)
         return math.log(open_earth(mains, leak, leak).current(math.exp(log_body), series))
 
-    name = "filter_capacitance_medical" if told.medical else "filter_capacitance_other"
-    return _through_body(_assumed(name), told, law)
+    return _through_body(_filter(told), told, law)
+
+
+def _filter(told: ElectricalStory) -> Estimate:
+    """Capacitance of each line to the case [F]."""
+    return _assumed("filter_capacitance_medical" if told.medical else "filter_capacitance_other")
 
 
 def _insulation_fault(told: ElectricalStory) -> Estimate:
@@ -282,6 +377,6 @@ _ISOLATED = _CURRENTS | {
 """On an isolated supply one bare line or bad case drives only what the rest of the system leaks."""
 
 
-def worst_current(voltage: float) -> float:
+def direct_ceiling(voltage: float) -> float:
     """Upper bound for a direct contact: full voltage over the hazard floor of the body [A]."""
     return voltage / hazard_floor()

@@ -11,6 +11,9 @@ from triage.quantity import Quantity, parse
 from triage.site import Site
 from triage.verdict import Judgement, judge
 
+_FOLLOWS = {"monitor_log": "isolated_alarm_test"}
+"""Checks whose edition is that of another where the site names none: one monitor, one alarm value."""
+
 
 def held_against_limits(
     check: Check, kind: CheckKind, *, item: Item | None, value: Quantity | None, site: Site
@@ -27,7 +30,8 @@ def held_against_limits(
     source = limits_from(check, kind)
     if source is None or value is None or value.value < 0:
         return ()
-    chosen = next((e.edition for e in site.file.editions if e.check == kind.id and e.edition), None)
+    named = (kind.id, _FOLLOWS.get(kind.id))
+    chosen = next((e.edition for e in site.file.editions if e.check in named and e.edition), None)
     rows = _rows(check, item, source=source, edition=chosen, quantity=value.kind) or _rows(
         check, item, source=source, edition=source.edition, quantity=value.kind
     )

@@ -16,7 +16,12 @@ from triage.documents.charts import (
     voltage_against_humidity,
     weights,
 )
-from triage.documents.summary import best_of, checks_by_performer, rests_on
+from triage.documents.check_guide import open_check_blocks
+from triage.documents.electrical import electrical_blocks, other_source_blocks
+from triage.documents.look_back import look_back_blocks
+from triage.documents.readings import reading_lines
+from triage.documents.summary import best_of, rests_on
+from triage.documents.witnesses import witness_lines
 from triage.documents.wording import (
     LEVEL_NAME,
     amount,
@@ -27,6 +32,7 @@ from triage.documents.wording import (
     percent,
     percent_range,
 )
+from triage.electrical_exposure import ELECTRICAL_CAUSES
 from triage.errors import InvalidValue
 from triage.exposure import widest_conditions
 from triage.knowledge import knowledge
@@ -46,9 +52,13 @@ def analysis_sections(a: Assessment) -> list[dict[str, Any]]:
         ("What does not fit", False, _misfits(a)),
         ("Voltage and humidity", True, _humidity(a)),
         ("What was physically possible", True, _physics(a)),
+        ("Mains current, contact by contact", True, electrical_blocks(a)),
+        ("What the readings mean", False, [_list(list(reading_lines(a)))]),
+        ("Sources besides mains leakage", True, other_source_blocks(a)),
         ("Red flags", False, [_list(list(_flags(a)))]),
         ("Why this disposition", False, _why(a)),
-        ("Checks still open", False, _open_checks(a)),
+        ("Checks still open", False, open_check_blocks(a)),
+        ("Look-back after the defect", False, look_back_blocks(a)),
         ("Actions", False, [_list(list(_actions(a)))]),
     ]
     return [
@@ -119,10 +129,7 @@ def _misfits(a: Assessment) -> list[Block]:
     for finding, value in sorted(a.posterior.conflicts.items(), key=lambda p: -p[1]):
         if value >= 0.7:
             lines.append(f"All other facts speak against: {k.findings[finding].name}.")
-    for finding, said in sorted(a.evidence.disagreements.items()):
-        each = ", ".join(f"{s} says {state.replace('_', ' ')}" for s, state in sorted(said.items()))
-        lines.append(f"Statements differ on {k.findings[finding].name}: {each}.")
-    return [_list(lines)]
+    return [_list(lines + witness_lines(a))]
 
 
 def _humidity(a: Assessment) -> list[Block]:
@@ -190,13 +197,7 @@ def _physics(a: Assessment) -> list[Block]:
                          f"{percent(s.felt.value)} ({percent_range(s.felt)})",
                          f"charge {amount(s.charge.median, 'charge')}, "
                          f"energy {amount(s.energy.median, 'energy')}"])  # fmt: skip
-        elif each.electrical is not None:
-            e = each.electrical
-            rows.append([k.causes[cause].name, amount(e.current.median, "current"),
-                         amount_range(e.current.interval(), "current"),
-                         f"{percent(e.felt.value)} ({percent_range(e.felt)})",
-                         f"worst zone {e.zone}"])  # fmt: skip
-        elif each.unknown:
+        elif each.unknown and cause not in ELECTRICAL_CAUSES:
             rows.append([k.causes[cause].name, "not known", "", "", each.unknown])
     columns = (("If it was", 30), ("Middle", 11), ("Range, 9 in 10", 19),
                ("Felt", 20), ("With it", 20))  # fmt: skip
@@ -235,16 +236,6 @@ def _why(a: Assessment) -> list[Block]:
         blocks.append(
             _note(f"Static is not the disposition, and this would have to change: {shut}.")
         )
-    return blocks
-
-
-def _open_checks(a: Assessment) -> list[Block]:
-    blocks: list[Block] = []
-    start = 1
-    for who, lines in checks_by_performer(a):
-        blocks.append({"kind": "heading", "text": who})
-        blocks.append({"kind": "steps", "lines": list(lines), "start": start})
-        start += len(lines)
     return blocks
 
 

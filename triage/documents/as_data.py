@@ -1,5 +1,6 @@
 """The assessment as plain data: for other programs, and attached to the report."""
 
+import json
 from typing import Any
 
 from triage.assessment import Assessment
@@ -47,6 +48,15 @@ def as_data(a: Assessment, s: Summary) -> dict[str, Any]:
             for name, o in sorted(a.evidence.observed.items())
         },
         "disagreements": {f: dict(said) for f, said in sorted(a.evidence.disagreements.items())},
+        "testimony": {
+            "matters": a.testimony.matters,
+            "each": [{"statement": b.statement, "first": b.first, "probability": b.probability,
+                      "mains": b.mains} for b in a.testimony.each],
+        },
+        "look_back": [
+            {"question": each.question.id, "answer": each.answer, "by": each.by}
+            for each in a.look_back
+        ],
         "red_flags": [
             {"flag": f.flag.id, "because": f.because, "items": list(f.items),
              "cleared": f.cleared, "clearing": f.missing}
@@ -73,6 +83,14 @@ def as_data(a: Assessment, s: Summary) -> dict[str, Any]:
             for name, c in dict.fromkeys(sources(a))
         ],
     }  # fmt: skip
+
+
+def as_json(data: Any) -> str:
+    """Data as JSON text; a character that could act on a terminal is written as its escape."""
+    text = json.dumps(data, ensure_ascii=False, indent=1)
+    if text.replace("\n", "").isprintable():
+        return text
+    return "".join(c if c.isprintable() or c == "\n" else json.dumps(c)[1:-1] for c in text)
 
 
 def _causes(a: Assessment) -> list[dict[str, Any]]:

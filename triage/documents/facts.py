@@ -5,6 +5,7 @@ from typing import Any
 
 from triage import words as w
 from triage.assessment import Assessment
+from triage.documents.readings import limit_lines
 from triage.documents.wording import item_name, meaning, meanings
 from triage.incident import Check, Incident, Statement
 from triage.validity import CheckVerdict
@@ -196,6 +197,7 @@ def _checks(a: Assessment) -> Iterator[Block]:
     )  # fmt: skip
     if warned:
         yield _list(list(warned))
+    yield _list(list(limit_lines(a)))
 
 
 def _check_row(v: CheckVerdict, incident: Incident) -> list[str]:

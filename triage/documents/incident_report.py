@@ -9,14 +9,13 @@ from triage.assessment import Assessment
 from triage.documents.analysis import analysis_sections
 from triage.documents.as_data import as_data
 from triage.documents.facts import facts_sections
+from triage.documents.page_one import page_one
 from triage.documents.sources import source_lines
-from triage.documents.summary import Summary, summarise
+from triage.documents.summary import Summary, summarise, watch_line
+from triage.documents.wording import room_name, spoken
 from triage.errors import CannotWrite
 from triage.render import Attachment, render_html, render_pdf
-
-_MOST = {"causes": 4, "estimates": 3, "unknown": 3, "checks": 4, "cautions": 2, "quotes": 2}
-"""Longest lists on page one, so that it stays one page; the rest follows in the other parts."""
-_QUOTE = 120
+from triage.tables import table
 
 
 def context(a: Assessment, s: Summary, *, page_one_only: bool = False) -> dict[str, Any]:
@@ -29,9 +28,10 @@ def context(a: Assessment, s: Summary, *, page_one_only: bool = False) -> dict[s
     file = a.site.file
     state = "final" if a.incident.outcome.confirmed_cause else "preliminary"
     parts = [] if page_one_only else _parts(a, s)
+    paper, heading = file.paper or "A4", _heading(a)
     return {
         "language": file.language or "en",
-        "paper": file.paper or "A4",
+        "paper": paper,
         "title": f"Incident report {a.record.case}, issue 1, {state}",
         "draft": False,
         "running": {
@@ -41,94 +41,20 @@ def context(a: Assessment, s: Summary, *, page_one_only: bool = False) -> dict[s
             "page": "Page",
             "of": "of",
         },
-        "heading": {"name": "Incident report", "lines": _heading(a)},
-        "page_one": _page_one(a, s),
+        "heading": {"name": "Incident report", "lines": heading},
+        "page_one": page_one(a, s, heading, paper),
         "parts": parts,
     }
 
 
 def _heading(a: Assessment) -> list[str]:
     incident, facility = a.incident, a.site.file.facility
-    place = incident.place.room_name or incident.place.room or "place not known"
+    place = room_name(a)
     when = incident.event.at.text if incident.event.at else "time not known"
     by = incident.recorded_by or "role not recorded"
     at = f", {incident.recorded_at.text}" if incident.recorded_at else ""
     where = f"{facility} · {place}" if facility else place
     return [f"{where} · event {when}", f"Recorded by {by}{at}"]
-
-
-def _page_one(a: Assessment, s: Summary) -> dict[str, Any]:
-    return {
-        "marking": a.site.file.wording.analysis_marking or "",
-        "person": _person(s),
-        "equipment": {
-            "condition": s.condition,
-            "headline": s.headline,
-            "rows": [
-                {"item": i.item, "defect": i.defect, "severity": i.severity,
-                 "disposition": i.disposition}
-                for i in s.items
-            ],
-            "room": s.room,
-        },
-        "happened": {"summary": s.happened, "quotes": _quotes(s)},
-        "causes": {
-            "summary": s.causes_lead,
-            "rows": [[c.cause, c.words, c.range] for c in s.causes[: _MOST["causes"]]],
-            "note": s.causes_note,
-        },
-        "estimates": [
-            [e.quantity, e.middle, e.range or "—", e.rests_on]
-            for e in s.estimates[: _MOST["estimates"]]
-        ],
-        "not_known": _shortened(s.unknown, _MOST["unknown"]) or ["Nothing that would matter."],
-        "next_checks": _first_checks(s) or [{"who": "Nobody", "checks": ["None is open."]}],
-        "cautions": _cautions(a, s),
-    }  # fmt: skip
-
-
-def _person(s: Summary) -> list[str]:
-    """The lead, the two most urgent actions together, and the state of the review."""
-    return [s.person[0], " ".join(s.person[1:3]), " ".join(s.reviews)]
-
-
-def _quotes(s: Summary) -> list[dict[str, str]]:
-    found: list[dict[str, str]] = []
-    for each in s.statements:
-        # Three items fill the room that a second voice would take; it stands in the facts.
-        most = _MOST["quotes"] if len(s.items) < 3 else 1
-        if each.words and len(found) < most:
-            text = each.words
-            if len(text) > _QUOTE:
-                text = text[: _QUOTE - 2].rsplit(" ", 1)[0] + " …"
-            heading = f"{each.by or 'Witness'} ({each.id})"
-            found.append({"heading": heading, "text": text, "language": each.language or "en"})
-    return found
-
-
-def _shortened(lines: tuple[str, ...], most: int) -> list[str]:
-    if len(lines) <= most:
-        return list(lines)
-    rest = len(lines) - most + 1
-    return [*lines[: most - 1], f"{rest} more; see the analysis"]
-
-
-def _first_checks(s: Summary) -> list[dict[str, Any]]:
-    """The first checks overall, still grouped by who may do them."""
-    groups, left = [], _MOST["checks"]
-    for who, lines in s.next_checks:
-        taken = lines[: min(left, 3)]
-        left -= len(taken)
-        if taken:
-            groups.append({"who": who, "checks": list(taken)})
-    return groups
-
-
-def _cautions(a: Assessment, s: Summary) -> list[str]:
-    """The cautions of this outcome before the general ones, which stand in full later."""
-    own = [c.text for c in a.cautions if c.when != "always"]
-    general = [c.text for c in a.cautions if c.when == "always"]
-    return [*own, *general][: _MOST["cautions"]]
 
 
 def _parts(a: Assessment, s: Summary) -> list[dict[str, Any]]:
@@ -145,17 +71,18 @@ def _parts(a: Assessment, s: Summary) -> list[dict[str, Any]]:
 def _closing(a: Assessment, s: Summary) -> list[dict[str, Any]]:
     sections = [
         {"title": "Not known", "wide": False,
-         "blocks": [{"kind": "list", "lines": list(s.unknown) or ["Nothing that would matter."]}]},
+         "blocks": [{"kind": "list", "lines": list(s.unknown)}]},
         {"title": "Cautions", "wide": False,
          "blocks": [{"kind": "list", "lines": list(s.cautions)}]},
+        {"title": "The person", "wide": False, "blocks": _care(a)},
         {"title": "Signatures", "wide": True,
          "blocks": [{"kind": "signatures", "columns": _SIGNATURE_COLUMNS,
                      "rows": _SIGNATURE_ROWS}]},
+        {"title": "Departures and versions", "wide": False,
+         "blocks": [{"kind": "list", "lines": list(_departures(a))}]},
         {"title": "Sources of the numbers", "wide": True,
          "blocks": [{"kind": "text", "class": "note", "text": _SOURCES_NOTE},
                     {"kind": "sources", "lines": list(source_lines(a))}]},
-        {"title": "Departures and versions", "wide": False,
-         "blocks": [{"kind": "list", "lines": list(_departures(a))}]},
     ]  # fmt: skip
     if s.questions:
         sections.insert(0, {"title": "Please confirm", "wide": False,
@@ -163,6 +90,21 @@ def _closing(a: Assessment, s: Summary) -> list[dict[str, Any]]:
     return sections
 
 
+def _care(a: Assessment) -> list[dict[str, Any]]:
+    """Every action for the person, and the published positions where they differ."""
+    rows = [
+        [row.action, _URGENCY[row.urgency], " ".join(row.sources) or "—"] for row in a.care.rows
+    ]
+    columns = [{"name": "What to arrange", "width": 42}, {"name": "How soon", "width": 14},
+               {"name": "Published positions", "width": 44}]  # fmt: skip
+    return [
+        {"kind": "table", "columns": columns, "rows": rows},
+        {"kind": "text", "text": watch_line()},
+        {"kind": "text", "class": "note", "text": " ".join(table("care")["disclaimer"].split())},
+    ]
+
+
+_URGENCY = {"now": "now", "same_day": "today", "route": "ordinary route"}
 _SIGNATURE_COLUMNS = [
     {"name": "Part", "width": 16}, {"name": "Role", "width": 34},
     {"name": "Signature", "width": 32}, {"name": "Date", "width": 18},
@@ -177,12 +119,10 @@ _SOURCES_NOTE = (
 
 def _departures(a: Assessment) -> list[str]:
     file = a.site.file
-    lines = [
-        f"Edition in force for {e.check.replace('_', ' ')}: {e.edition}" for e in file.editions
-    ]
+    lines = [f"Edition in force for {spoken(e.check)}: {e.edition}" for e in file.editions]
     lines += [f"Limit {t.limit} tightened to {t.value}" for t in file.tightened]
     lines += [
-        f"{r.cause.replace('_', ' ')} made {r.times} times as probable: {r.reason or 'no reason'}"
+        f"{spoken(r.cause)} made {r.times} times as probable: {r.reason or 'no reason'}"
         for r in file.policy.raised
     ]
     if file.policy.miss_ratio:
@@ -245,7 +185,7 @@ def _write(target: Path, content: bytes) -> None:
                 file.write(content)
                 file.flush()
                 os.fsync(file.fileno())
-            os.chmod(name, 0o644)
+            os.chmod(name, 0o666 & ~_umask())
             os.replace(name, target)
         except BaseException:
             Path(name).unlink(missing_ok=True)
@@ -253,3 +193,10 @@ def _write(target: Path, content: bytes) -> None:
     except OSError as error:
         reason = error.strerror or "cannot be written"
         raise CannotWrite(f"{target}: {reason}; name another place with -o") from None
+
+
+def _umask() -> int:
+    """What the user withholds from new files; it can only be read by setting it."""
+    mask = os.umask(0o077)
+    os.umask(mask)
+    return mask

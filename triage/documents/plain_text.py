@@ -4,9 +4,11 @@ from collections.abc import Iterator
 from textwrap import wrap
 
 from triage.assessment import Assessment
+from triage.documents.look_back import look_back_lines
 from triage.documents.sources import source_lines
 from triage.documents.summary import Summary, summarise
-from triage.documents.wording import LEVEL_NAME
+from triage.documents.witnesses import witness_lines
+from triage.documents.wording import LEVEL_NAME, spoken
 from triage.knowledge import knowledge
 from triage.visible import visible
 
@@ -32,7 +34,7 @@ def plain_text(a: Assessment, *, why: bool = False) -> str:
 def _sections(a: Assessment, s: Summary) -> Iterator[tuple[str, list[str]]]:
     yield "PERSON", _items((*s.person, *s.reviews))
     yield "DISPOSITION", _dispositions(s)
-    yield "DEFECTS FOUND", _items(s.defects or ("None by the checks done.",))
+    yield "DEFECTS FOUND", _items(s.defects)
     causes = [f"{c.cause}: {c.words}; {c.range}" for c in s.causes]
     yield "RANKED CAUSES OF THE SENSATION", [
         *_wrapped(s.causes_lead), *_numbered(causes), *_wrapped(s.causes_note),
@@ -42,7 +44,7 @@ def _sections(a: Assessment, s: Summary) -> Iterator[tuple[str, list[str]]]:
         for e in s.estimates
     ]
     yield "ESTIMATES (middle, 9 in 10)", _items(rows)
-    yield "NOT KNOWN", _items(s.unknown or ("Nothing that would matter.",))
+    yield "NOT KNOWN", _items(s.unknown)
     if s.questions:
         yield "PLEASE CONFIRM", _items(s.questions)
     checks: list[str] = []
@@ -65,7 +67,7 @@ def _dispositions(s: Summary) -> list[str]:
 def _why(a: Assessment) -> Iterator[tuple[str, list[str]]]:
     k = knowledge()
     first, second = (k.causes[c].name for c in a.posterior.pair)
-    rows = [f"{weight.decibans:+6.1f}  {weight.label}" for weight in a.posterior.weights]
+    rows = [f"{weight.decibans:+6.1f}  {spoken(weight.label)}" for weight in a.posterior.weights]
     rows.append(f"{sum(weight.decibans for weight in a.posterior.weights):+6.1f}  odds of the pair")
     yield f"WEIGHTS in decibans: {first} (+) against {second} (-)", [f"  {r}" for r in rows]
     flags = [
@@ -75,8 +77,28 @@ def _why(a: Assessment) -> Iterator[tuple[str, list[str]]]:
     yield "RED FLAGS", _items(flags or ["None."])
     gate = ["open"] if a.gate.open else [f"shut: {each}" for each in a.gate.shut_by]
     yield f"GATE TO {LEVEL_NAME[type(a.headline)(1)].upper()}", _items(gate)
-    yield "THE CONCLUSION HANGS ON", _items(a.sensitivity.hangs_on)
+    yield "THE CONCLUSION HANGS ON", _items([spoken(each) for each in a.sensitivity.hangs_on])
+    positions = [f"{row.action} {each}" for row in a.care.rows for each in row.sources]
+    if a.testimony.each:
+        yield "WHOM ONE BELIEVES", _items(witness_lines(a))
+    if a.look_back:
+        yield "LOOK-BACK AFTER THE DEFECT", _items(look_back_lines(a))
+    yield "PUBLISHED POSITIONS ON THE PERSON", _items(positions or ["None."])
+    yield from _electrical(a)
     yield "NUMBERS AND THEIR SOURCES", _items(source_lines(a))
+
+
+def _electrical(a: Assessment) -> Iterator[tuple[str, list[str]]]:
+    """Currents, readings, other sources and checks in full; loaded only where it is printed."""
+    from triage.documents.check_guide import check_lines
+    from triage.documents.electrical import electrical_lines, other_source_lines
+    from triage.documents.readings import limit_lines, reading_lines
+
+    yield "MAINS CURRENT, CONTACT BY CONTACT", _items(list(electrical_lines(a)))
+    yield "READINGS AGAINST LIMITS", _items(limit_lines(a) or ("None has a limit.",))
+    yield "WHAT THE READINGS MEAN", _items(reading_lines(a) or ("None needs explaining.",))
+    yield "SOURCES BESIDES MAINS LEAKAGE", _items(list(other_source_lines(a)) or ["Excluded."])
+    yield "WHAT EACH OPEN CHECK PROVES", _items(list(check_lines(a)) or ["None is open."])
 
 
 def _wrapped(text: str) -> list[str]:

@@ -7,7 +7,6 @@ from triage.citation import Citation
 from triage.documents.summary import best_of
 from triage.knowledge import knowledge
 from triage.materials import load
-from triage.physics.figures import cited
 from triage.tables import citation, table
 
 _ALWAYS = ("sensation.felt", "walking.model_doubt", "bodies.standing.capacitance")
@@ -16,11 +15,6 @@ _BY_CAUSE = {
     "person_rising": ("acts.rise.", "walking.corona_limit"),
     "charged_object": ("rolling.", "objects."),
 }
-_SOURCE_OF_CAUSE = {
-    "open_earth": "filter_capacitance_medical", "insulation_fault": "insulation_fault",
-    "moisture": "moisture_path", "earth_difference": "earth_difference",
-    "isolated_first_fault": "hazard_current",
-}  # fmt: skip
 
 
 def sources(a: Assessment) -> Iterator[tuple[str, Citation]]:
@@ -64,17 +58,10 @@ def _static(a: Assessment) -> Iterator[tuple[str, Citation]]:
 
 
 def _mains(a: Assessment) -> Iterator[tuple[str, Citation]]:
-    yield "perception of current, light touch", cited("perception", "touch")
-    yield "perception of current, sensitive", cited("perception", "sensitive")
-    yield "hazard floor of the body", cited("body", "hazard_floor")
-    used = {_SOURCE_OF_CAUSE.get(best_of(a, "mains") or "")}
-    if not a.exposure.conditions.voltage_known:
-        used |= {"nominal_voltage", "nominal_frequency"}
-    if a.exposure.ceiling is not None:
-        used |= {"monitor_tolerance"}
-    for row in table("touch_sources")["sources"]:
-        if row["id"] in used:
-            yield row["name"], citation(row, row["id"])
+    """Loaded only here: the short form for the terminal prints no sources."""
+    from triage.documents.electrical_sources import electrical_sources
+
+    yield from electrical_sources(a)
 
 
 def source_lines(a: Assessment) -> tuple[str, ...]:

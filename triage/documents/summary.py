@@ -6,6 +6,7 @@ One wording for page one, the terminal and every short form.
 from triage.assessment import Assessment, named_conflicts
 from triage.check_table import PERFORMERS
 from triage.disposition import Level
+from triage.documents.witnesses import witness_verdict
 from triage.documents.wording import (
     LEVEL_NAME,
     NBSP,
@@ -19,14 +20,19 @@ from triage.documents.wording import (
     percent,
     percent_range,
     room_line,
+    room_name,
+    spoken,
 )
+from triage.errors import InvalidValue
 from triage.frozen import frozen
 from triage.incident import Statement
 from triage.knowledge import knowledge
 from triage.materials import load
 from triage.next_checks import NextCheck
 from triage.physics.sensation import after_noticing
-from triage.words import REVIEW
+from triage.static_exposure import StaticExposure
+from triage.tables import table
+from triage.words import AREA, FOOTWEAR, REVIEW
 
 PERFORMER_NAME = {
     "any_staff": "Any staff",
@@ -38,6 +44,8 @@ _URGENCY_LEAD = {
     "same_day": "The person comes first: medical assessment today.",
     "route": "The person comes first: the occupational-health route.",
 }
+_FIRE = "Vapour or oxygen within reach of the spark: a fire matter, whatever the cause."
+_SHOES = {word: meaning.split(",")[0] for word, (_, meaning) in FOOTWEAR.items()}
 METHOD_NOTE = (
     "The likelihoods behind the ranking are judged; no measured frequencies stand behind them."
 )
@@ -101,21 +109,32 @@ def summarise(a: Assessment) -> Summary:
     return Summary(
         person_lines(a), review_lines(a), condition(a.incident), headline(a), item_lines(a),
         room_line(a),
-        tuple(f"{item_name(a.incident, d.item)}: {d.text}" for d in a.evidence.defects),
-        _happened(a), a.incident.statements, causes_lead(a), cause_lines(a), causes_note(a),
-        estimate_lines(a), a.unknown, checks_by_performer(a),
+        defect_lines(a), _happened(a), a.incident.statements, causes_lead(a),
+        cause_lines(a), causes_note(a),
+        estimate_lines(a), unknown_lines(a), checks_by_performer(a),
         tuple(c.text for c in a.cautions), a.record.questions,
     )  # fmt: skip
 
 
 def person_lines(a: Assessment) -> tuple[str, ...]:
     """The lead, then each action."""
-    lead = _URGENCY_LEAD[a.care.urgency]
-    if any(r.when == "skin_or_glove_breach" for r in a.care.rows):
-        lead = "The person comes first: blood-exposure route now."
-    fire = "Vapour or oxygen within reach of the spark: a fire matter, whatever the cause."
-    lines = [lead, *([fire] if a.care.ignition else [])]
-    return (*lines, *(row.action for row in a.care.rows))
+    lines = [person_lead(a), *([_FIRE] if a.care.ignition else [])]
+    return (*lines, *(row.action for row in a.care.rows), watch_line())
+
+
+def person_lead(a: Assessment) -> str:
+    """The person first: how soon, and the blood-exposure route beside it, never instead of it."""
+    now = [row.when for row in a.care.rows if row.urgency == "now"]
+    if "skin_or_glove_breach" not in now:
+        return _URGENCY_LEAD[a.care.urgency]
+    if len(now) == 1:
+        return "The person comes first: blood-exposure route now."
+    return "The person comes first: medical assessment and blood-exposure route now."
+
+
+def watch_line() -> str:
+    """What to report at once when it appears later."""
+    return f"Watch for: {'; '.join(table('care')['watch_for'])}."
 
 
 def review_lines(a: Assessment) -> tuple[str, ...]:
@@ -124,8 +143,12 @@ def review_lines(a: Assessment) -> tuple[str, ...]:
     if not persons:
         return ("Nobody is on record as affected; ask who was.",)
     return tuple(
-        f"{(p.role or p.who or p.id).capitalize()}: {meaning(REVIEW, p.review)}." for p in persons
+        f"{_opened(p.role or p.who or p.id)}: {meaning(REVIEW, p.review)}." for p in persons
     )
+
+
+def _opened(words: str) -> str:
+    return words[0].upper() + words[1:]
 
 
 def headline(a: Assessment) -> str:
@@ -140,20 +163,50 @@ def item_lines(a: Assessment) -> tuple[ItemLine, ...]:
     """Each item, most severe first."""
     lines = []
     for each in sorted(a.items, key=lambda i: (-i.level, i.item)):
-        defects = [d.text for d in a.evidence.defects if d.item == each.item]
         lines.append(ItemLine(
-            item_name(a.incident, each.item), "; ".join(defects) or "none found by the checks done",
+            item_name(a.incident, each.item), _defects_of(each.item, a),
             int(each.level), item_order(each, a.incident), "; ".join(each.reasons),
         ))  # fmt: skip
     return tuple(lines)
 
 
+def _defects_of(item: str, a: Assessment) -> str:
+    """Defects of one item; where no valid check was done, that and not "none"."""
+    found = [d.text for d in a.evidence.defects if d.item == item]
+    if found:
+        return "; ".join(found)
+    done = any(v.check.of == item and v.state == "valid_pass" for v in a.verdicts)
+    return "none found by the checks done" if done else "not known: no valid check yet"
+
+
+def defect_lines(a: Assessment) -> tuple[str, ...]:
+    """Every defect; without one, whether any valid check stands behind that."""
+    found = tuple(f"{item_name(a.incident, d.item)}: {d.text}" for d in a.evidence.defects)
+    if found:
+        still = sum(each.answer is None for each in a.look_back)
+        return (*found, f"Look-back opened by it: {still} of {len(a.look_back)} questions open.")
+    done = any(v.state == "valid_pass" for v in a.verdicts)
+    return ("None found by the checks done." if done else "Not known: no valid check yet.",)
+
+
+def unknown_lines(a: Assessment) -> tuple[str, ...]:
+    """What is not known and would matter; with every answer given, the checks that are open."""
+    if a.unknown:
+        return a.unknown
+    needed = sum(each.mandatory for each in a.next_checks)
+    if needed:
+        return (f"no answer of those that decide is missing; checks needed for release: {needed}",)
+    return ("no answer of those that decide is missing",)
+
+
 def _happened(a: Assessment) -> str:
-    event, place = a.incident.event, a.incident.place
+    event, area = a.incident.event, a.incident.place.area
     when = event.at.text if event.at else "time not known"
-    where = place.room_name or place.room or place.area or "place not known"
+    where = room_name(a)
+    if where == "place not known" and area:
+        where = meaning(AREA, area)
     summary = f" {event.summary.strip()}" if event.summary else ""
-    return f"{when}, {where.replace('_', ' ')}.{summary}"
+    return f"{when}, {where}.{summary}"
 
 
 def causes_lead(a: Assessment) -> str:
@@ -187,7 +240,7 @@ def causes_note(a: Assessment) -> str:
     """What does not fit, conflicts, and the method note."""
     k, parts = knowledge(), []
     for each in a.misfits:
-        parts.append(f"Does not fit the first cause: {each.finding.name} ({each.state}).")
+        parts.append(f"Does not fit the first cause: {each.finding.name} ({spoken(each.state)}).")
     for finding, _ in named_conflicts(a.posterior):
         parts.append(f"All other facts speak against the answer on: {k.findings[finding].name}.")
     if "driven" in a.evidence.observed and k.causes[a.posterior.ranked[0]].mechanism == "static":
@@ -197,6 +250,7 @@ def causes_note(a: Assessment) -> str:
     if a.evidence.disagreements:
         named = ", ".join(k.findings[f].name for f in sorted(a.evidence.disagreements))
         parts.append(f"Witnesses disagree on: {named}; the more adverse answer is used.")
+        parts.append(witness_verdict(a))
     return " ".join([*parts, METHOD_NOTE])
 
 
@@ -232,18 +286,27 @@ def _static_lines(a: Assessment) -> list[EstimateLine]:
     if cause is None or exposure is None:
         unknown = next((e.unknown for e in a.exposure.causes.values() if e.unknown), "no model")
         return [EstimateLine("Static charge", "not known", "", unknown)]
-    threshold = load().threshold("felt")
-    rests = rests_on(a)
     name = knowledge().causes[cause].name.lower()
-    volts = after_noticing(exposure.voltage, exposure.charge, threshold)
-    energy = after_noticing(exposure.energy, exposure.charge, threshold)
     return [
-        EstimateLine(f"Voltage if felt: {name}", amount(volts.median, "voltage"),
-                     amount_range(volts.interval(), "voltage"), rests),
-        EstimateLine("Discharge energy, if felt", amount(energy.median, "energy"),
-                     amount_range(energy.interval(), "energy"), "charge and capacitance"),
+        *_felt_lines(exposure, name, rests_on(a)),
         EstimateLine("Chance that such a discharge is felt", percent(exposure.felt.value),
                      percent_range(exposure.felt), "charge against the felt threshold"),
+    ]  # fmt: skip
+
+
+def _felt_lines(exposure: StaticExposure, name: str, rests: str) -> list[EstimateLine]:
+    """Voltage and energy given that it was felt; as they are where nobody could feel it."""
+    threshold, given = load().threshold("felt"), " if felt"
+    try:
+        volts = after_noticing(exposure.voltage, exposure.charge, threshold)
+        energy = after_noticing(exposure.energy, exposure.charge, threshold)
+    except InvalidValue:
+        volts, energy, given = exposure.voltage, exposure.energy, ""
+    return [
+        EstimateLine(f"Voltage{given}: {name}", amount(volts.median, "voltage"),
+                     amount_range(volts.interval(), "voltage"), rests),
+        EstimateLine(f"Discharge energy{given}", amount(energy.median, "energy"),
+                     amount_range(energy.interval(), "energy"), "charge and capacitance"),
     ]  # fmt: skip
 
 
@@ -269,9 +332,11 @@ def rests_on(a: Assessment) -> str:
     """The circumstances behind the static estimates, in words."""
     c = a.exposure.conditions
     humidity = f"{c.humidity.fraction * 100:.0f}{NBSP}% RH" if c.humidity else "humidity not known"
-    floor = (c.floor or "floor not known").replace("_", " ")
-    shoes = (c.casters if c.object_kind else c.footwear) or "shoes or wheels not known"
-    return f"{humidity}, {floor}, {shoes.replace('_', ' ')}"
+    floor = f"{spoken(c.floor)} floor" if c.floor else "floor not known"
+    if not c.object_kind:
+        return f"{humidity}, {floor}, {_SHOES[c.footwear] if c.footwear else 'shoes not known'}"
+    wheels = "no wheels" if c.casters == "none" else f"{spoken(c.casters or 'unknown')} wheels"
+    return f"{humidity}, {floor}, {wheels}"
 
 
 def checks_by_performer(a: Assessment) -> tuple[tuple[str, tuple[str, ...]], ...]:

@@ -3,6 +3,8 @@
 Every order to cut power stands behind its condition when somebody depends on it, or may.
 """
 
+import re
+
 from triage import words as w
 from triage.assessment import Assessment
 from triage.bounds import Probability
@@ -25,7 +27,7 @@ LEVEL_NAME = {
 _ORDER = {
     Level.STATIC_CONTROLS: "static controls; release is signed by the authorised roles.",
     Level.HOLD: "hold out of use until the named checks are done and valid.",
-    Level.WITHDRAW: "withdraw and quarantine with cord and accessories, as found.",
+    Level.WITHDRAW: "withdraw and quarantine as found, with all that was connected to it.",
     Level.ISOLATE: "isolate the circuit; a licensed electrician before it is used again.",
 }
 _ORDER_FIXED = {
@@ -77,11 +79,9 @@ def item_order(each: ItemDisposition, incident: Incident) -> str:
 def room_line(assessment: Assessment) -> str:
     """What may be used in the room, and who decides."""
     incident, room = assessment.incident, assessment.room
-    reasons = "; ".join(room.reasons)
+    reasons = "; ".join(_with_name(incident, each) for each in room.reasons)
     if room.level >= Level.WITHDRAW:
-        alarm = any(f.flag.id == "monitor_alarm" and not f.cleared for f in assessment.flags)
-        how = _FIRST_FAULT if alarm else order(Level.ISOLATE, None, incident)
-        return f"Room: restricted ({reasons}). {how}"
+        return f"Room: restricted ({reasons}). {_room_order(assessment)}"
     if room.level == Level.HOLD:
         return (
             f"Room: restricted where it is held; the engineer on duty decides. Because: {reasons}."
@@ -89,9 +89,30 @@ def room_line(assessment: Assessment) -> str:
     return f"Room: may be used without the held items; the engineer on duty decides ({reasons})."
 
 
+def _room_order(assessment: Assessment) -> str:
+    """What happens to a restricted room; only a fault of the supply itself needs it cut."""
+    if any(f.flag.id == "monitor_alarm" and not f.cleared for f in assessment.flags):
+        return _FIRST_FAULT
+    if assessment.room.level == Level.ISOLATE:
+        return order(Level.ISOLATE, None, assessment.incident)
+    return "People keep away from it; a licensed electrician decides which circuit is made dead."
+
+
+def _with_name(incident: Incident, reason: str) -> str:
+    """A reason that opens with the id of an item, with the name that people call it by."""
+    head, rest = re.match(r"([^\s:]*)(.*)", reason, re.DOTALL).groups()  # type: ignore[union-attr]
+    item = find_item(incident, head)
+    return f"{item.name}{rest}" if item is not None and item.name else reason
+
+
 def meaning(words: WordList, word: str | None) -> str:
     """The meaning of a record word; "not known" for none."""
     return words[word][1] if word is not None else "not known"
+
+
+def spoken(text: str) -> str:
+    """Words of the tables as people read them, without their underscores."""
+    return text.replace("_", " ")
 
 
 def meanings(words: WordList, found: tuple[str, ...]) -> str:
@@ -109,6 +130,13 @@ def item_name(incident: Incident, item_id: str | None) -> str:
     if item.name:
         return f"{item.name} ({item.id})"
     return f"{meaning(w.ITEM_KIND, item.kind)} ({item.id})" if item.kind else item.id
+
+
+def room_name(assessment: Assessment) -> str:
+    """The place as people call it: as recorded, else as the site file names the room."""
+    place = assessment.incident.place
+    known = assessment.site.room(place.room)
+    return place.room_name or (known.name if known else None) or place.room or "place not known"
 
 
 def likelihood(p: float) -> str:
