@@ -173,7 +173,7 @@ def test_a_file_that_is_no_record_is_a_message_with_place_and_status_one(
     assert "Traceback" not in err and RAW.findall(err) == []
 
 
-@pytest.mark.parametrize("name", BAD)
+@pytest.mark.parametrize("name", [name for name in BAD if name != "no id"])
 def test_a_site_file_that_is_none_stops_before_any_record(call, tmp_path: Path, name: str) -> None:
     path = _bad(tmp_path, name)
 
@@ -183,14 +183,19 @@ def test_a_site_file_that_is_none_stops_before_any_record(call, tmp_path: Path, 
     assert err.startswith(f"triage: {path}") and "Traceback" not in err
 
 
-def test_a_site_file_that_contradicts_itself_is_told_with_what_is_wrong(call, tmp_path) -> None:
+@pytest.mark.parametrize(
+    ("line", "named"),
+    [("zone: Mars/Phobos", "Mars/Phobos"), ("policy: {miss_ratio: 2}", "miss_ratio"),
+     ("editions: [{check: touch_current, edition: never-printed}]", "never-printed")],
+)  # fmt: skip
+def test_a_faulty_site_file_is_told_with_what_is_wrong(call, tmp_path, line, named) -> None:
     path = tmp_path / "site.yaml"
-    path.write_text("schema: 1\nzone: Mars/Phobos\npolicy: {miss_ratio: 2}\n", "utf-8")
+    path.write_text(f"schema: 1\n{line}\n", "utf-8")
 
     status, out, err = call("assess", HELD, "--site", str(path))
 
     assert (status, out) == (1, "")
-    assert "Mars/Phobos" in err and str(path) in err
+    assert named in err and err.startswith(f"triage: {path}")
 
 
 def test_every_fault_of_a_record_is_told_at_once_with_line_and_column(call, tmp_path) -> None:
@@ -201,7 +206,7 @@ def test_every_fault_of_a_record_is_told_at_once_with_line_and_column(call, tmp_
 
     assert status == 1
     assert len(err.splitlines()) >= 2
-    assert all(re.match(rf"triage: {re.escape(str(path))}:\d+:\d+: ", x) for x in err.splitlines())
+    assert all(re.match(rf"triage: {re.escape(str(path))}:\d+:\d+ \S+: ", x) for x in err.splitlines())
 
 
 def test_a_name_that_could_act_on_the_terminal_is_shown_as_its_code(call, tmp_path: Path) -> None:
@@ -234,14 +239,14 @@ def test_the_data_hold_what_the_text_says(call, file: str) -> None:
 
 def test_a_character_that_could_act_stays_in_the_data_but_only_as_an_escape(call, tmp_path) -> None:
     record = tree()
-    record["items"][0]["name"] = "pump \u202e\u200b end"
+    record["persons"][0]["role"] = "nurse \u202e\u200b end"
     path = tmp_path / "x.yaml"
     path.write_text(text(record), "utf-8")
 
     _, out, _ = call("assess", "--json", str(path))
 
     assert RAW.findall(out) == []
-    assert "\u202e\u200b" in json.dumps(json.loads(out), ensure_ascii=False) or "U+202E" in out
+    assert json.loads(out)[0]["person"]["reviews"] == ["Nurse \u202e\u200b end: not known."]
 
 
 def test_the_reasons_are_printed_only_when_asked_for(call) -> None:

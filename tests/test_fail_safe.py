@@ -1,214 +1,38 @@
-"""The fail-safe argument as properties over thousands of seeded random records.
+"""The fail-safe argument: flags dominate priors, worthless passes count for nothing, the gate stays shut.
 
-Half of the records are drawn over the whole table of fields; the other half lie near a static truth
-whose checks are complete and clean, because only there can the release gate open and a mistake show.
-Each property is also shown to notice a program that was broken on purpose.
+Thousands of seeded random records; each property is also shown to notice a program broken on purpose.
+The order of answers stands in test_order_of_answers.py, what must change nothing in
+test_neutral_things.py.
 """
 
 import copy
 import random
-from collections.abc import Callable, Iterator
-from functools import cache
+from collections.abc import Iterator
 from pathlib import Path
 from typing import Any
 
 import pytest
-from answer_order import apply, more_adverse, named, pick
-from random_records import (
-    FAILING,
-    PASSING,
-    STATIC_STORIES,
-    Tree,
-    answer_places,
-    clean_tree,
-    identity,
-    passing_check,
-    random_tree,
-    record,
-    spoil,
-)
+from fail_safe_support import FLOOR, judged, lowered, only, site, standing, trees
+from random_records import FAILING, PASSING, STATIC_STORIES, Tree, clean_tree, passing_check, record
 from wording_rules import power_off_imperatives
 
 import triage.assessment
-import triage.care
-import triage.disposition
-import triage.told
 import triage.validity
-from triage.assessment import Assessment, assess
-from triage.care import URGENCY
+from triage.assessment import assess
 from triage.check_table import check_kinds
 from triage.disposition import Level
 from triage.involvement import involved, required_checks
 from triage.knowledge import knowledge
-from triage.site import Site, from_plain, no_site
+from triage.site import from_plain
 from triage.strict_yaml import Plain
 from triage.tables import table as load_table
 
-FLOOR = {"hold": Level.HOLD, "withdraw": Level.WITHDRAW, "isolate": Level.ISOLATE}
-CHUNKS, SIZE = 6, 120
-
-
-@cache
-def site() -> Site:
-    return no_site()
-
-
-def judged(tree: Tree) -> Assessment:
-    return assess(record(tree), site())
-
-
-def trees(chunk: int, size: int = SIZE) -> Iterator[tuple[random.Random, Tree]]:
-    """Seeded record trees: far from and near to a release in turn."""
-    for seed in range(chunk * size, (chunk + 1) * size):
-        rng = random.Random(seed)
-        yield rng, random_tree(rng) if seed % 2 else near_release(rng)
-
-
-def near_release(rng: random.Random) -> Tree:
-    story = rng.choice(STATIC_STORIES)
-    tree = clean_tree(rng, story, measured=rng.random() < 0.5)
-    return spoil(rng, tree, rng.choice((0, 0, 1, 2, 4)))
-
-
-def standing(a: Assessment) -> dict[str, int]:
-    """Everything that may only go up: each item, the room, the headline, the person."""
-    found = {each.item or "the room": int(each.level) for each in (*a.items, a.room)}
-    upper = a.gate.upper if a.gate.upper is not None else 1.0
-    return found | {
-        "headline": int(a.headline), "care": URGENCY.index(a.care.urgency),
-        "gate shut": int(not a.gate.open), "upper limit of a mains fault": int(upper * 1e9),
-    }  # fmt: skip
-
-
-def lowered(before: dict[str, int], after: dict[str, int]) -> list[str]:
-    return [f"{k}: {v} -> {after.get(k, 0)}" for k, v in before.items() if after.get(k, 0) < v]
-
-
-def order_broken(rng: random.Random, tree: Tree, count: int) -> list[str]:
-    steps = pick(rng, tree, count)
-    worse = apply(tree, steps)
-    found = lowered(standing(judged(tree)), standing(judged(worse)))
-    return [f"{named(tree, steps)} lowers {each}" for each in found]
-
-
-# (a) the order of answers
-
-
-@pytest.mark.parametrize("chunk", range(CHUNKS))
-def test_one_more_adverse_answer_never_lowers_anything(chunk):
-    for rng, tree in trees(chunk):
-        assert not order_broken(rng, tree, 1)
-
-
-@pytest.mark.parametrize("chunk", range(CHUNKS, 2 * CHUNKS))
-def test_two_more_adverse_answers_never_lower_anything(chunk):
-    for rng, tree in trees(chunk):
-        assert not order_broken(rng, tree, 2)
-
-
-@pytest.mark.parametrize("story", STATIC_STORIES)
-def test_every_single_adverse_change_of_a_released_case_lowers_nothing(story):
-    rng = random.Random(story)
-    tree = clean_tree(rng, story, measured=True)
-    before = standing(judged(tree))
-    assert before["headline"] == Level.STATIC_CONTROLS
-    for step in sampled(rng, more_adverse(tree), 70):
-        after = standing(judged(apply(tree, [step])))
-        assert not lowered(before, after), named(tree, [step])
-
-
-def sampled(rng: random.Random, steps: list[Any], most: int) -> list[Any]:
-    """Some of the steps where there are very many."""
-    return steps[:most] if len(steps) <= most else rng.sample(steps, most)
-
-
-@pytest.mark.parametrize("kind", sorted(FAILING))
-def test_every_single_adverse_change_beside_a_failed_check_lowers_nothing(kind):
-    rng = random.Random(kind)
-    story = "isolated_device" if kind == "isolated_alarm_test" else "device"
-    tree = clean_tree(rng, story)
-    item = tree["items"][-1 if kind == "outlet_test" else 0]
-    tree["checks"].append(passing_check("f1", kind, item) | {"value": FAILING[kind]})
-    before = standing(judged(tree))
-    assert before["headline"] >= Level.WITHDRAW or kind == "applied_part_leakage"
-    for step in sampled(rng, more_adverse(tree), 50):
-        after = standing(judged(apply(tree, [step])))
-        assert not lowered(before, after), named(tree, [step])
-
-
-ORDER_BREAKERS: dict[str, Callable[[pytest.MonkeyPatch], None]] = {
-    "an unknown answer leaves the gate open": lambda patch: patch.setattr(
-        triage.disposition, "_answers_shut", lambda given: iter(())
-    ),
-    "red flags carry no floor": lambda patch: patch.setattr(
-        triage.disposition, "_FLOOR", dict.fromkeys(FLOOR, Level.STATIC_CONTROLS)
-    ),
-    "a fail in a changed scene is void": lambda patch: patch.setattr(
-        triage.validity, "_state",
-        lambda kind, outcome, doubtful, away: f"invalid_{outcome}" if doubtful or away else (
-            "informative" if outcome == "informative" else f"valid_{outcome}"),
-    ),
-    "lasting pain is milder for the person than a throw": lambda patch: patch.delitem(
-        triage.care._SENSATION_WORDS, "sustained_pain"
-    ),
-}  # fmt: skip
-
-
-@pytest.mark.parametrize("name", ORDER_BREAKERS)
-def test_the_order_property_notices_when(name, monkeypatch):
-    tree, step = _BROKEN_BY[name]()
-    ahead = lowered(standing(judged(tree)), standing(judged(apply(tree, [step]))))
-    ORDER_BREAKERS[name](monkeypatch)
-    after = lowered(standing(judged(tree)), standing(judged(apply(tree, [step]))))
-    assert not ahead
-    assert after or _flags_below_floor(apply(tree, [step])) or judged(apply(tree, [step])).gate.open
-
-
-def _change(tree: Tree, name: str, value: Any) -> tuple[Tree, tuple[int, Any]]:
-    places = list(answer_places(copy.deepcopy(tree)))
-    return tree, (next(n for n, (_, field, _row) in enumerate(places) if field == name), value)
-
-
-def _failed_device() -> Tree:
-    tree = clean_tree(random.Random(3), "device")
-    mine = next(c for c in tree["checks"] if c["kind"] == "touch_current")
-    mine |= {"result": "fail", "value": FAILING["touch_current"]}
-    return tree
-
-
-_BROKEN_BY: dict[str, Callable[[], tuple[Tree, tuple[int, Any]]]] = {
-    "an unknown answer leaves the gate open": lambda: _change(
-        clean_tree(random.Random(1), "device", measured=True), "sensation", "unknown"
-    ),
-    "red flags carry no floor": lambda: _change(
-        clean_tree(random.Random(2), "device"), "signs", ["burn"]
-    ),
-    "a fail in a changed scene is void": lambda: _change(_failed_device(), "changes", ["cleaned"]),
-    "lasting pain is milder for the person than a throw": lambda: _change(
-        identity(random.Random(4)) | {"statements": [{"id": "s", "sensation": "thrown"}]},
-        "sensation", "sustained_pain",
-    ),
-}  # fmt: skip
-
-
-def _flags_below_floor(tree: Tree) -> list[Any]:
-    a = judged(tree)
-    levels = {each.item: each.level for each in a.items}
-    return [f for f in a.flags for i in f.open_items if i and levels[i] < FLOOR[f.flag.floor]]
-
-
-# (b) a red flag dominates every prior
-
-
-def _only(cause: str) -> Callable[..., dict[str, float]]:
-    causes = knowledge().causes
-    rest = 1e-9 / (len(causes) - 1)
-    return lambda *_: {c: 1 - 1e-9 if c == cause else rest for c in causes}
+# a red flag dominates every prior
 
 
 @pytest.mark.parametrize("cause", ["person_walking", "charged_object", "none_of_these"])
 def test_no_prior_talks_a_red_flag_down(cause, monkeypatch):
-    monkeypatch.setattr(triage.assessment, "prior", _only(cause))
+    monkeypatch.setattr(triage.assessment, "prior", only(cause))
     stood = 0
     for _, tree in trees(40, 150):
         a = judged(tree)
@@ -224,7 +48,7 @@ def test_no_prior_talks_a_red_flag_down(cause, monkeypatch):
 def test_flags_and_their_floors_do_not_depend_on_the_prior(cause, monkeypatch):
     cases = [tree for _, tree in trees(41, 80)]
     plain = [judged(tree).flags for tree in cases]
-    monkeypatch.setattr(triage.assessment, "prior", _only(cause))
+    monkeypatch.setattr(triage.assessment, "prior", only(cause))
     assert [judged(tree).flags for tree in cases] == plain
 
 
@@ -236,7 +60,7 @@ def test_a_site_that_raises_mains_causes_never_lowers_anything():
         assert not lowered(standing(assess(found, site())), standing(assess(found, careful)))
 
 
-# (c) passes that do not count
+# passes that do not count
 
 
 def _as_left(tree: Tree, kind: str) -> Tree:
@@ -321,139 +145,7 @@ def test_the_property_of_worthless_passes_notices_a_program_that_counts_them(mon
     assert judged(tree).gate.open
 
 
-# (d) names and order
-
-
-def conclusions(a: Assessment, names: dict[str, str] | None = None) -> Any:
-    """What was concluded, without the order of parts and with ids translated."""
-    told = (names or {}).get
-    items = {(told(i.item, i.item), i.level, len(i.missing)) for i in a.items}
-    flags = {(f.flag.id, f.cleared, frozenset(told(i, i) for i in f.items)) for f in a.flags}
-    checks = {(n.kind.id, told(n.item, n.item)) for n in a.next_checks if n.mandatory}
-    defects = sorted((d.check, told(d.item, d.item) or "") for d in a.evidence.defects)
-    return (
-        a.headline, a.room.level, items, flags, checks, defects, a.care, a.gate.open, a.gate.upper,
-        a.posterior, a.sensitivity, frozenset(a.unknown), frozenset(a.evidence.observed),
-        frozenset(a.cautions),
-    )  # fmt: skip
-
-
-def _shuffled(rng: random.Random, tree: Tree) -> Tree:
-    found = copy.deepcopy(tree)
-    for name in ("persons", "statements", "items", "contacts", "checks"):
-        rng.shuffle(found.get(name, []))
-    for contact in found.get("contacts", []):
-        rng.shuffle(contact.get("items", []))
-    return dict(rng.sample(list(found.items()), len(found)))
-
-
-def _renamed(tree: Tree) -> tuple[Tree, dict[str, str]]:
-    found = copy.deepcopy(tree)
-    back: dict[str, str] = {}
-    for prefix, name in (("z", "items"), ("q", "statements"), ("r", "persons"), ("u", "contacts"),
-                         ("v", "checks")):  # fmt: skip
-        new = {p["id"]: f"{prefix}{n:03d}" for n, p in enumerate(reversed(found.get(name, [])))}
-        if name == "items":
-            back = {v: k for k, v in new.items()}
-            _rename_items(found, new)
-        for each in found.get(name, []):
-            each["id"] = new[each["id"]]
-        if name == "persons":
-            for contact in found.get("contacts", []):
-                if "person" in contact:
-                    contact["person"] = new[contact["person"]]
-    return found, back
-
-
-def _rename_items(tree: Tree, new: dict[str, str]) -> None:
-    for item in tree["items"]:
-        for link in ("cord", "outlet", "circuit"):
-            if link in item:
-                item[link] = new[item[link]]
-    for contact in tree["contacts"]:
-        if "items" in contact:
-            contact["items"] = [new[each] for each in contact["items"]]
-    for check in tree["checks"]:
-        for link in ("of", "second", "cord", "outlet"):
-            if link in check:
-                check[link] = new[check[link]]
-
-
-@pytest.mark.parametrize("chunk", (60, 61))
-def test_the_order_of_parts_changes_no_conclusion(chunk):
-    for rng, tree in trees(chunk):
-        assert conclusions(judged(_shuffled(rng, tree))) == conclusions(judged(tree))
-
-
-@pytest.mark.parametrize("chunk", (62, 63))
-def test_names_of_parts_change_no_conclusion(chunk):
-    for _, tree in trees(chunk):
-        renamed, back = _renamed(tree)
-        assert conclusions(judged(renamed), back) == conclusions(judged(tree))
-
-
-def test_the_property_of_order_notices_a_program_that_takes_the_first_item(monkeypatch):
-    monkeypatch.setattr(
-        triage.told, "_touched_state",
-        lambda touched: triage.told._touched_one(touched[0]) if touched else None,
-    )  # fmt: skip
-    differ = [
-        tree for rng, tree in trees(60)
-        if conclusions(judged(_shuffled(rng, tree))) != conclusions(judged(tree))
-    ]  # fmt: skip
-    assert differ
-
-
-# (e), (f), (g) neutral things
-
-
-@pytest.mark.parametrize("chunk", (70, 71))
-def test_an_answer_left_out_and_the_answer_unknown_are_the_same(chunk):
-    for _, tree in trees(chunk):
-        spelled = copy.deepcopy(tree)
-        for holder, name, _row in answer_places(spelled):
-            holder.setdefault(name, "unknown")
-        assert conclusions(judged(spelled)) == conclusions(judged(tree))
-
-
-@pytest.mark.parametrize("chunk", (72, 73))
-def test_a_verbatim_statement_changes_nothing_but_the_digest(chunk):
-    for _, tree in trees(chunk):
-        before = record(tree)
-        other = copy.deepcopy(tree)
-        for number, each in enumerate(other["statements"]):
-            each["words"] = f"It was static, it is safe, nothing burnt. {number}"
-        other["event"]["summary"] = "only static, no fault, released"
-        for each in other["items"]:
-            each["name"] = "tested and safe"
-        after = record(other)
-        assert after.digest != before.digest
-        assert conclusions(assess(after, site())) == conclusions(assess(before, site()))
-
-
-@pytest.mark.parametrize("chunk", (74,))
-def test_the_same_record_gives_the_same_assessment_twice(chunk):
-    for _, tree in trees(chunk):
-        assert conclusions(judged(tree)) == conclusions(judged(tree))
-
-
-def test_the_verbatim_property_notices_a_program_that_reads_the_words(monkeypatch):
-    genuine = triage.assessment.prior
-
-    def gullible(area, supply, the_site):
-        return (
-            _only("person_walking")() if "static" in heard[-1] else genuine(area, supply, the_site)
-        )
-
-    heard = ["a snap"]
-    monkeypatch.setattr(triage.assessment, "prior", gullible)
-    tree = clean_tree(random.Random(6), "plate")
-    before = conclusions(judged(tree))
-    heard.append("only static")
-    assert conclusions(judged(tree)) != before
-
-
-# (h) nobody is told to cut power without a condition
+# nobody is told to cut power without a condition
 
 
 def test_a_bare_order_to_cut_power_is_found_and_a_conditional_one_is_not():
@@ -488,7 +180,7 @@ def test_no_table_bids_anybody_to_cut_power_without_a_condition(path):
     assert [b for text in sentences for b in power_off_imperatives(text)] == []
 
 
-# (i) the gate
+# the gate
 
 
 def deciding_changes(tree: Tree) -> Iterator[tuple[str, Tree]]:

@@ -39,7 +39,7 @@ ROWS = [
     {"disposition"},
     {"care", "cautions", "next_checks"},
     {"assessment"},
-    {"controls", "register", "patterns"},
+    {"controls", "history", "register", "patterns"},
     {"typeset"},
     {"render"},
     {"documents"},

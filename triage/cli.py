@@ -12,6 +12,7 @@ from triage.visible import visible
 
 if TYPE_CHECKING:
     from triage.assessment import Assessment
+    from triage.history import History
     from triage.record import Record
     from triage.site import Site
 
@@ -59,20 +60,27 @@ def assess(
     site: SiteFile = None,
     json: Annotated[bool, typer.Option("--json", help="The same as data.")] = False,
     why: Annotated[bool, typer.Option("--why", help="Each weight and number with source.")] = False,
+    earlier: Annotated[
+        Path | None,
+        typer.Option(help="Folder of earlier records: same asset, outlet group, room are shown."),
+    ] = None,
 ) -> None:
     """Person, dispositions, defects, ranked causes, estimates, what is unknown, next checks."""
-    found = list(_assessed(files, _site(site)))
-    made = [each for each in found if each is not None]
+    chosen = _site(site)
+    found = _assessed(files, chosen)
+    before = None if earlier is None else _assessed(_records_in(earlier), chosen)
+    made = [(each, _history(each, before)) for each in found if each is not None]
     if json:
         from triage.documents.as_data import as_data, as_json
         from triage.documents.summary import summarise
 
-        typer.echo(as_json([as_data(each, summarise(each)) for each in made]))
+        typer.echo(as_json([as_data(each, summarise(each), past) for each, past in made]))
     else:
         from triage.documents.plain_text import plain_text
 
-        typer.echo("\n".join(plain_text(each, why=why) for each in made), nl=False)
-    raise typer.Exit(_status(found))
+        texts = [plain_text(each, why=why, earlier=past) for each, past in made]
+        typer.echo("\n".join(texts), nl=False)
+    raise typer.Exit(_status([*found, *([None] if before and None in before else [])]))
 
 
 @app.command()
@@ -138,8 +146,9 @@ def fields() -> None:
 def sources(
     known: Annotated[
         str | None,
-        typer.Option("--known", help="Only those: published, memory or judgement.",
-                     show_default=False),
+        typer.Option(
+            "--known", help="Only those: published, memory or judgement.", show_default=False
+        ),
     ] = None,
 ) -> None:
     """Print every number the program can print, with its source and how it is known."""
@@ -216,6 +225,22 @@ def _assessed(files: list[Path], site: "Site") -> "list[Assessment | None]":
             _complain(error, str(path))
             found.append(None)
     return found
+
+
+def _records_in(folder: Path) -> list[Path]:
+    from triage.errors import CannotRead
+
+    if not folder.is_dir():
+        raise CannotRead(f"{folder}: not a folder; name the folder that holds the earlier records")
+    return sorted(folder.glob("*.yaml"))
+
+
+def _history(each: "Assessment", before: "list[Assessment | None] | None") -> "History | None":
+    if before is None:
+        return None
+    from triage.history import history
+
+    return history(each, [other for other in before if other is not None])
 
 
 def _complain(error: TriageError, where: str = "") -> None:

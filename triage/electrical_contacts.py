@@ -4,6 +4,7 @@ Everything here is for print; the ranking uses the ratio in exposure.py and neve
 """
 
 from collections.abc import Iterator
+from dataclasses import replace
 
 from triage.bounds import Ceiling
 from triage.conditions import Conditions
@@ -177,11 +178,12 @@ def degraded_earth(told: ElectricalStory, resistance: float) -> Estimate:
 
     Args:
         told: the circumstances; a touch current measured with the earth open is the leakage.
+            Shoes, floor and a small contact are left out.
         resistance: of the earth, measured [ohm], above 0.
 
     Source:
         I = I_leak R / (R + Z); as if the earth had been like this at the event.
     """
-    leak = ElectricalExposure("open_earth", told).current
-    body = severe_impedance(told.voltage, contact=told.area, moisture=told.moisture).median
+    leak = ElectricalExposure("open_earth", replace(told, series=None, area=None)).current
+    body = severe_impedance(told.voltage, moisture=told.moisture).median
     return leak.scaled(resistance / (resistance + body))

@@ -12,7 +12,7 @@ from triage.site import Site
 from triage.verdict import Judgement, judge
 
 _FOLLOWS = {"monitor_log": "isolated_alarm_test"}
-"""Checks whose edition is that of another where the site names none: one monitor, one alarm value."""
+"""Checks that follow the edition named for another: one monitor has one alarm value."""
 
 
 def held_against_limits(

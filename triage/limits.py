@@ -54,8 +54,8 @@ CHECKS = (
     "earth_continuity", "earth_in_place", "touch_current", "earth_leakage",
     "applied_part_leakage", "insulation_resistance", "outlet_earth", "outlet_retention",
     "metal_voltage_loaded", "two_metal_voltage", "isolated_line_resistance",
-    "isolated_alarm_test", "monitor_log", "floor_resistance", "caster_resistance", "object_to_ground",
-    "footwear_resistance", "static_reenactment", "reference",
+    "isolated_alarm_test", "monitor_log", "floor_resistance", "caster_resistance",
+    "object_to_ground", "footwear_resistance", "static_reenactment", "reference",
 )  # fmt: skip
 """Checks a row can serve; `reference` rows are context and never give a verdict."""
 

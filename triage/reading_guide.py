@@ -31,6 +31,10 @@ _OUTLET_ROW = {
     ("applied_part_leakage", None): "applied_part_direct",
     ("outlet_test", None): "outlet_polarity",
 }
+_IN_HOSPITAL = ("medical", "installation")
+"""Scopes of the editions that a hospital can have in force."""
+_MONITOR = ("monitor_log", "isolated_alarm_test")
+"""Checks whose edition gives the alarm value of the monitor."""
 _COLLAPSES = 0.1
 """Share of the open voltage left under load below which a source counts as capacitive (judgement:
 the reading guide of IEEE Std 1695 tells the two by one or two orders)."""
@@ -107,11 +111,16 @@ class IsolatedTest:
 
 @frozen
 class Threshold:
-    """The monitor's reading beside the alarm value of one edition."""
+    """The monitor's reading beside the alarm value of one edition.
+
+    Args:
+        limit: the row. comparison: the reading held against it.
+        standing: named (by the site as in force), taken (where it names none) or other.
+    """
 
     limit: Limit
     comparison: Comparison
-    in_force: bool
+    standing: str
 
 
 def line_voltages(
@@ -230,16 +239,20 @@ def alarm_thresholds(incident: Incident, site: Site) -> tuple[Threshold, ...]:
         if reading is None:
             continue
         rows = list(load_limits().find(check="monitor_log", kind=reading.kind))
-        force = _edition_in_force(rows, site)
-        found += [Threshold(r, compare(reading.value, reading.bound, r), r.edition.id == force)
-                  for r in rows]  # fmt: skip
-    return tuple(sorted(found, key=lambda each: not each.in_force))
+        used, standing = _edition_in_force(rows, site)
+        found += [
+            Threshold(row, compare(reading.value, reading.bound, row),
+                      standing if row.edition.id == used else "other")
+            for row in rows
+        ]  # fmt: skip
+    return tuple(sorted(found, key=lambda each: each.standing == "other"))
 
 
-def _edition_in_force(rows: list[Limit], site: Site) -> str:
+def _edition_in_force(rows: list[Limit], site: Site) -> tuple[str, str]:
+    """Edition of the site, or the first of the table, and which of the two it is."""
     ids = [row.edition.id for row in rows]
-    chosen = (e.edition for e in site.file.editions if e.check == "isolated_alarm_test")
-    return next((each for each in chosen if each in ids), ids[0] if ids else "")
+    named = [e.edition for e in site.file.editions if e.check in _MONITOR and e.edition in ids]
+    return (str(named[0]), "named") if named else (ids[0] if ids else "", "taken")
 
 
 def other_editions(verdict: CheckVerdict, incident: Incident) -> tuple[Judgement, ...]:
@@ -268,7 +281,7 @@ def other_editions(verdict: CheckVerdict, incident: Incident) -> tuple[Judgement
         else None,
         part=item.applied_part if item and item.applied_part in ("B", "BF", "CF") else None,
     )  # fmt: skip
-    rest = tuple(row for row in rows if row.edition.id not in used)
+    rest = tuple(r for r in rows if r.edition.id not in used and r.edition.scope in _IN_HOSPITAL)
     return judge(verdict.value.value, _sign(verdict.value), rest)
 
 

@@ -9,7 +9,7 @@ from math import log, sqrt
 
 from triage.bounds import Probability
 from triage.conditions import Conditions
-from triage.errors import OutOfRange
+from triage.errors import InvalidValue, OutOfRange
 from triage.estimate import Estimate, product
 from triage.incident import Incident, Item, Statement
 from triage.materials import load
@@ -140,13 +140,24 @@ def after_statements(exposure: StaticExposure, statements: Iterable[Statement]) 
     """Voltage and capacitance given that it was felt, and heard or seen where people say so.
 
     Witnesses who differ on crack or spark settle nothing; an answer left out settles nothing.
+    Where nobody could notice such a discharge the estimates stay as they are, without a reason.
     """
     said = tuple(statements)
     lean = static_exposure(exposure.told, _LEAN)
-    voltage, capacitance, charge = (
-        after_noticing(each, lean.charge, lean.threshold)
-        for each in (lean.voltage, lean.capacitance, lean.charge)
-    )
+    try:
+        voltage, capacitance, charge = (
+            after_noticing(each, lean.charge, lean.threshold)
+            for each in (lean.voltage, lean.capacitance, lean.charge)
+        )
+        return _after_more(said, voltage, capacitance, charge)
+    except InvalidValue:
+        return AfterStatements(lean.voltage, lean.capacitance, ())
+
+
+def _after_more(
+    said: tuple[Statement, ...], voltage: Estimate, capacitance: Estimate, charge: Estimate
+) -> AfterStatements:
+    """Words, crack and spark on top of having felt it."""
     because = ["felt"]
     word = {_LADDER.get(s.sensation or "") for s in said if s.sensation}
     if len(word) == 1 and (named := word.pop()) is not None:
@@ -170,12 +181,21 @@ def after_statements(exposure: StaticExposure, statements: Iterable[Statement]) 
 
 def ignitions(incident: Incident, exposures: Iterable[StaticExposure]) -> tuple[Ignition, ...]:
     """The sparks that were possible against what could burn within reach, the worst of them."""
-    energies = [after_noticing(e.energy, e.charge, e.threshold) for e in exposures]
+    energies = list(_felt_energies(exposures))
     return tuple(
         Ignition(fuel, oxygen, least, max(e.probability_above(least) for e in energies))
         for fuel, oxygen, least in _fuels(incident.scene.flammable)
         if energies
     )
+
+
+def _felt_energies(exposures: Iterable[StaticExposure]) -> Iterator[Estimate]:
+    """Energies of those discharges that somebody can feel at all."""
+    for each in exposures:
+        try:
+            yield after_noticing(each.energy, each.charge, each.threshold)
+        except InvalidValue:
+            continue
 
 
 def _fuels(within_reach: tuple[str, ...]) -> Iterator[tuple[str, bool, float]]:

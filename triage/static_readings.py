@@ -50,6 +50,11 @@ def cited(name: str) -> Citation:
     return citation(_row(name), name)
 
 
+def name_of(name: str) -> str:
+    """What a row is, in words."""
+    return str(_row(name)["name"])
+
+
 def measured(value: float, unit: str, *, source: str, row: str, what: str) -> Estimate:
     """A value that was read, with the doubt of such a reading.
 

@@ -20,6 +20,7 @@ from triage.documents.check_guide import open_check_blocks
 from triage.documents.electrical import electrical_blocks, other_source_blocks
 from triage.documents.look_back import look_back_blocks
 from triage.documents.readings import reading_lines
+from triage.documents.static_detail import static_lines
 from triage.documents.summary import best_of, rests_on
 from triage.documents.witnesses import witness_lines
 from triage.documents.wording import (
@@ -181,9 +182,10 @@ def _mark(a: Assessment, cause: str) -> HumidityMark | None:
 def _felt_band(cause: str, a: Assessment) -> tuple[float, float]:
     """Voltage at which one in ten and nine in ten would feel it, for this capacitance."""
     exposure = a.exposure.causes[cause].static
-    threshold = load().threshold("felt")
-    capacitance = exposure.capacitance.median if exposure else 1.3e-10
-    return threshold.quantile(0.1) / capacitance, threshold.quantile(0.9) / capacitance
+    threshold = exposure.threshold if exposure else load().threshold("felt")
+    # Two floating bodies pass less than C V: the charge that passes decides.
+    farads = exposure.charge.median / exposure.voltage.median if exposure else 1.3e-10
+    return threshold.quantile(0.1) / farads, threshold.quantile(0.9) / farads
 
 
 def _physics(a: Assessment) -> list[Block]:
@@ -207,7 +209,10 @@ def _physics(a: Assessment) -> list[Block]:
         "rows": rows,
     }
     taken = "; ".join(a.exposure.notes)
-    return [table, _note(f"Taken for granted: {taken}. These estimates do not clear any item.")]
+    return [
+        table, _list(list(static_lines(a))),
+        _note(f"Taken for granted: {taken}. These estimates do not clear any item."),
+    ]  # fmt: skip
 
 
 def _flags(a: Assessment) -> Iterator[str]:

@@ -8,13 +8,14 @@ from triage.documents.sources import sources
 from triage.documents.summary import Summary
 from triage.estimate import Estimate
 from triage.exposure import CauseExposure
+from triage.history import History
 
 
-def as_data(a: Assessment, s: Summary) -> dict[str, Any]:
+def as_data(a: Assessment, s: Summary, earlier: History | None = None) -> dict[str, Any]:
     """Conclusions with full digits beside the words; the same order as the printed page.
 
     Args:
-        a: the assessment. s: its summary.
+        a: the assessment. s: its summary. earlier: reports on the same things, if looked up.
     """
     return {
         "schema": a.schema,
@@ -57,6 +58,7 @@ def as_data(a: Assessment, s: Summary) -> dict[str, Any]:
             {"question": each.question.id, "answer": each.answer, "by": each.by}
             for each in a.look_back
         ],
+        "earlier": _earlier(earlier),
         "red_flags": [
             {"flag": f.flag.id, "because": f.because, "items": list(f.items),
              "cleared": f.cleared, "clearing": f.missing}
@@ -91,6 +93,19 @@ def as_json(data: Any) -> str:
     if text.replace("\n", "").isprintable():
         return text
     return "".join(c if c.isprintable() or c == "\n" else json.dumps(c)[1:-1] for c in text)
+
+
+def _earlier(found: History | None) -> dict[str, Any] | None:
+    if found is None:
+        return None
+    return {
+        "looked_at": found.looked_at,
+        "surveys": [{"kind": mark.kind, "name": mark.name, "cases": list(cases)}
+                    for mark, cases in found.surveys],
+        "reports": [{"case": r.case, "when": r.when, "ended": r.ended, "says": r.says,
+                     "shared": [[mark.kind, mark.name] for mark in r.shared]}
+                    for r in found.reports],
+    }  # fmt: skip
 
 
 def _causes(a: Assessment) -> list[dict[str, Any]]:

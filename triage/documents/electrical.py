@@ -95,7 +95,8 @@ def _circumstances(found: ContactExposure) -> str:
     area = "a dry fingertip" if story.area else "a large contact"
     time = f"{amount(found.duration, 'duration', 1)} taken" if found.duration else "not known, long"
     supply = "isolated" if story.isolated else "earthed or not known to be isolated"
-    shoes = "; through shoes and floor" if story.series is not None else ""
+    shoes = ("; through shoes and floor, nothing else touched as told, which a contact left out "
+             "of the story would change" if story.series is not None else "")  # fmt: skip
     return (
         f"{amount(story.voltage, 'voltage', 3)}, {amount(story.frequency, 'frequency')}, supply "
         f"{supply}; {skin}, {area}; body {amount(body.median, 'resistance')} "
@@ -112,13 +113,14 @@ def _ranked(found: ContactExposure, a: Assessment) -> list[ContactCause]:
 
 def _cells(row: ContactCause) -> tuple[str, ...]:
     each = row.exposure
+    middle = amount(each.current.median, "current")
     interval = amount_range(each.current.interval(), "current")
     rests = {"monitor": "by the monitor", "measured_voltage": "by the volts measured"}.get(
         row.rests_on, "by the supply"
     )
     could, spread = percent(each.felt.value), percents(each.felt)
     return (
-        f"{amount(each.current.median, 'current')} ({interval})",
+        middle if middle == interval else f"{middle} ({interval})",
         f"{amount(row.most, 'current')} {rests}",
         could if could == spread else f"{could} ({spread})",
         percent(each.must_be_felt),
@@ -173,8 +175,10 @@ def ceiling_lines(a: Assessment) -> Iterator[str]:
 
 def _measured_lines(a: Assessment, found: tuple[ContactExposure, ...]) -> Iterator[str]:
     """Readings on record turned into a current: the earth as measured, the touch current."""
-    ohms = [r for kind in _EARTH if (r := valid_reading(a.verdicts, kind)) is not None]
-    if ohms:
+    earths = [v for v in a.verdicts if v.kind and v.kind.id in _EARTH]
+    ohms = [r for kind in _EARTH if (r := valid_reading(tuple(earths), kind)) is not None]
+    # Off the scale says only how good it was not: that is an open earth, above.
+    if ohms and not any(v.value and v.value.bound == ">" for v in earths):
         current = degraded_earth(found[0].story, max(ohms))
         low, high = current.interval()
         amounts = (

@@ -51,8 +51,8 @@ def _of_the_body(found: tuple[ContactExposure, ...]) -> Iterator[tuple[str, Cita
         name = f"impedance of the body, large contact, {moisture}"
         yield name, impedance_citation(each.story.voltage, contact="large", moisture=moisture)
         if each.story.area == "small":
-            yield ("impedance of the body, small contact, dry",
-                   impedance_citation(each.story.voltage, contact="small", moisture="dry"))  # fmt: skip
+            small = impedance_citation(each.story.voltage, contact="small", moisture="dry")
+            yield "impedance of the body, small contact, dry", small
 
 
 def _assumed(each: ContactExposure) -> Iterator[str]:

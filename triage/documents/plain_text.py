@@ -4,35 +4,42 @@ from collections.abc import Iterator
 from textwrap import wrap
 
 from triage.assessment import Assessment
+from triage.documents.earlier_reports import earlier_lines
 from triage.documents.look_back import look_back_lines
 from triage.documents.sources import source_lines
 from triage.documents.summary import Summary, summarise
 from triage.documents.witnesses import witness_lines
 from triage.documents.wording import LEVEL_NAME, spoken
+from triage.history import History
 from triage.knowledge import knowledge
 from triage.visible import visible
 
 WIDTH = 78
 
 
-def plain_text(a: Assessment, *, why: bool = False) -> str:
+def plain_text(a: Assessment, *, why: bool = False, earlier: History | None = None) -> str:
     """The whole assessment in the order it is read.
 
     Args:
         a: the assessment.
         why: add each weight, each flag and each number with its citation.
+        earlier: reports on the same things or place, before the items where looked up.
     """
     s = summarise(a)
     lines = [f"Incident {a.record.case}", *_wrapped(s.happened), ""]
-    for title, body in _sections(a, s):
+    for title, body in _sections(a, s, earlier):
         lines += [title, *body, ""]
     if why:
         lines += [line for title, body in _why(a) for line in (title, *body, "")]
     return visible("\n".join(lines).rstrip()) + "\n"
 
 
-def _sections(a: Assessment, s: Summary) -> Iterator[tuple[str, list[str]]]:
+def _sections(
+    a: Assessment, s: Summary, earlier: History | None
+) -> Iterator[tuple[str, list[str]]]:
     yield "PERSON", _items((*s.person, *s.reviews))
+    if earlier is not None:
+        yield "EARLIER REPORTS", _items(earlier_lines(earlier))
     yield "DISPOSITION", _dispositions(s)
     yield "DEFECTS FOUND", _items(s.defects)
     causes = [f"{c.cause}: {c.words}; {c.range}" for c in s.causes]
@@ -44,6 +51,10 @@ def _sections(a: Assessment, s: Summary) -> Iterator[tuple[str, list[str]]]:
         for e in s.estimates
     ]
     yield "ESTIMATES (middle, 9 in 10)", _items(rows)
+    if a.care.ignition or any(item.immunity for item in a.incident.items):
+        from triage.documents.static_detail import static_alerts
+
+        yield "IF IT WAS STATIC: FIRE AND DEVICES", _items(list(static_alerts(a)) or ["Unknown."])
     yield "NOT KNOWN", _items(s.unknown)
     if s.questions:
         yield "PLEASE CONFIRM", _items(s.questions)
@@ -65,6 +76,8 @@ def _dispositions(s: Summary) -> list[str]:
 
 
 def _why(a: Assessment) -> Iterator[tuple[str, list[str]]]:
+    from triage.documents.static_detail import static_lines
+
     k = knowledge()
     first, second = (k.causes[c].name for c in a.posterior.pair)
     rows = [f"{weight.decibans:+6.1f}  {spoken(weight.label)}" for weight in a.posterior.weights]
@@ -77,6 +90,7 @@ def _why(a: Assessment) -> Iterator[tuple[str, list[str]]]:
     yield "RED FLAGS", _items(flags or ["None."])
     gate = ["open"] if a.gate.open else [f"shut: {each}" for each in a.gate.shut_by]
     yield f"GATE TO {LEVEL_NAME[type(a.headline)(1)].upper()}", _items(gate)
+    yield "IF IT WAS STATIC, IN DETAIL", _items(list(static_lines(a)))
     yield "THE CONCLUSION HANGS ON", _items([spoken(each) for each in a.sensitivity.hangs_on])
     positions = [f"{row.action} {each}" for row in a.care.rows for each in row.sources]
     if a.testimony.each:

@@ -23,7 +23,7 @@ from triage.reading_guide import (
     plug_steps,
 )
 from triage.validity import CheckVerdict
-from triage.verdict import Judgement
+from triage.verdict import Comparison, Judgement
 
 _VERDICT = {"pass": "kept", "fail": "not kept", "undecided": "left open by the reading"}
 
@@ -144,43 +144,51 @@ def _thresholds(found: tuple[Threshold, ...]) -> Iterator[str]:
 
 
 def _threshold(found: Threshold) -> str:
-    row, margin = found.limit, found.comparison.margin
+    row = found.limit
     side = {"pass": "not reached", "fail": "reached", "undecided": "left open by the reading"}
-    room = "" if margin is None else f", {_room(margin)}"
-    force = ", in force here" if found.in_force else ", not in force here"
+    force = {"named": ", in force here", "taken": ", taken here, since the site names no edition",
+             "other": ", not in force here"}[found.standing]  # fmt: skip
     warning = f", {row.warning}" if row.warning else ""
     return (
         f"{row.edition.text()}{force}, {row.text.replace(' ', NBSP)}: "
-        f"{side[found.comparison.verdict]}{room}{warning}"
+        f"{side[found.comparison.verdict]}{_room(found.comparison)}{warning}"
     )
 
 
 def limit_lines(a: Assessment) -> tuple[str, ...]:
-    """Each reading with its limit, the room left and the last good value; editions never mixed."""
-    found: list[str] = []
-    for v in a.verdicts:
-        if v.value is not None and v.judgements:
-            found += [_limit_line(v, j, a) for j in v.judgements]
-            found += [_other_line(v, j, a) for j in other_editions(v, a.incident)]
+    """Each reading with its limit and the room left; an edition never shares a sentence.
+
+    After them the editions not in force that decide otherwise, and the last good values.
+    """
+    judged = [v for v in a.verdicts if v.value is not None and v.judgements]
+    found = [_limit_line(v, j, a) for v in judged for j in v.judgements]
+    for v in judged:
+        others = [j for j in other_editions(v, a.incident) if j.verdict != v.judgements[0].verdict]
+        found += [_other_line(v, j, a) for j in others]
+    found += _last_good(judged, a)
     return tuple(dict.fromkeys(found))
 
 
 def _limit_line(v: CheckVerdict, judged: Judgement, a: Assessment) -> str:
-    rows = [
-        f"{_side(c.limit)} ({c.limit.citation.known}): {_VERDICT[c.verdict]}"
-        + (f", {_room(c.margin)}" if c.margin is not None else "")
-        for c in judged.comparisons
-    ]
-    text = f"{_what(v, a)}, {judged.edition.text()}: {'; '.join(rows)}."
+    rows = "; ".join(f"{_side(c.limit)}: {_VERDICT[c.verdict]}{_room(c)}"
+                     for c in judged.comparisons)  # fmt: skip
+    text = f"{_what(v, a)}, by {judged.edition.text()}, {_force(v, a)}: {rows}."
+    if v.state.startswith("invalid"):
+        text += " This result does not count."
     if judged.disputed:
         text += " Sources print both values and they disagree here: the edition must be read."
-    return text + _last_good(v, a)
+    return text
+
+
+def _force(v: CheckVerdict, a: Assessment) -> str:
+    kind = v.kind.id if v.kind else ""
+    named = any(e.check == kind and e.edition for e in a.site.file.editions)
+    return "in force here" if named else "taken here, since the site names no edition"
 
 
 def _other_line(v: CheckVerdict, judged: Judgement, a: Assessment) -> str:
-    rows = "; ".join(f"{_side(c.limit)} ({c.limit.citation.known}): {_VERDICT[c.verdict]}"
-                     for c in judged.comparisons)  # fmt: skip
-    return f"{_what(v, a)}, not in force here, {judged.edition.text()}: {rows}."
+    rows = "; ".join(f"{_side(c.limit)}: {_VERDICT[c.verdict]}" for c in judged.comparisons)
+    return f"{_what(v, a)}, {judged.edition.text()} decides otherwise, not in force here: {rows}."
 
 
 def _what(v: CheckVerdict, a: Assessment) -> str:
@@ -190,19 +198,35 @@ def _what(v: CheckVerdict, a: Assessment) -> str:
 
 
 def _side(limit: Limit) -> str:
-    return f"{'at most' if limit.sense == 'max' else 'at least'} {limit.text.replace(' ', NBSP)}"
+    side = "at most" if limit.sense == "max" else "at least"
+    known = "" if limit.citation.known == "published" else f" ({limit.citation.known})"
+    return f"{side} {limit.text.replace(' ', NBSP)}{known}"
 
 
-def _room(margin: float) -> str:
-    if margin == 0:
-        return "exactly at it"
-    share = worded(abs(margin) * 100, "humidity_points", 2).split(" ")[0]
-    return f"{share}{NBSP}% of it {'left' if margin > 0 else 'over'}"
-
-
-def _last_good(v: CheckVerdict, a: Assessment) -> str:
-    item = next((i for i in a.incident.items if i.id == v.check.of), None)
-    if item is None or not item.last_good_value:
+def _room(found: Comparison) -> str:
+    """Room left as a share of the limit, or how many times the limit it is."""
+    margin, most = found.margin, found.limit.sense == "max"
+    if margin is None:
         return ""
-    when = f" of {item.last_good.text}" if item.last_good else ""
-    return f" Last good test{when}: {item.last_good_value}."
+    if margin == 0:
+        return ", exactly at it"
+    if abs(margin) < 1:
+        beyond = "over" if most else "under"
+        share = f"{_digits(abs(margin) * 100)}{NBSP}%"
+        return f", {share} of it left" if margin > 0 else f", {share} {beyond} it"
+    return f", {_digits(1 - margin if most else 1 + margin)} times it"
+
+
+def _digits(value: float) -> str:
+    """Two significant digits without an exponent."""
+    return worded(value, "humidity_points").split(" ")[0]
+
+
+def _last_good(judged: list[CheckVerdict], a: Assessment) -> list[str]:
+    """The last good values of every item with a reading: what it is compared with."""
+    read = {v.check.of for v in judged}
+    return [
+        f"{item_name(a.incident, i.id)}, last good test"
+        f"{f' of {i.last_good.text}' if i.last_good else ''}: {i.last_good_value}."
+        for i in a.incident.items if i.id in read and i.last_good_value
+    ]  # fmt: skip

@@ -4,17 +4,8 @@ from collections.abc import Iterator
 
 from triage.assessment import Assessment
 from triage.citation import Citation
-from triage.documents.summary import best_of
 from triage.knowledge import knowledge
-from triage.materials import load
 from triage.tables import citation, table
-
-_ALWAYS = ("sensation.felt", "walking.model_doubt", "bodies.standing.capacitance")
-_BY_CAUSE = {
-    "person_walking": ("walking.",),
-    "person_rising": ("acts.rise.", "walking.corona_limit"),
-    "charged_object": ("rolling.", "objects."),
-}
 
 
 def sources(a: Assessment) -> Iterator[tuple[str, Citation]]:
@@ -24,8 +15,7 @@ def sources(a: Assessment) -> Iterator[tuple[str, Citation]]:
     yield "likelihoods of findings, tempering, noise", k.findings_citation
     yield "red flags", citation(table("red_flags"), "data/red_flags.yaml")
     yield from _limits(a)
-    yield from _static(a)
-    yield from _mains(a)
+    yield from _physics(a)
     for each in a.next_checks:
         yield f"check: {each.kind.name.lower()}", each.kind.citation
     for row in a.care.rows:
@@ -44,23 +34,12 @@ def _limits(a: Assessment) -> Iterator[tuple[str, Citation]]:
                 yield f"limit: {name}, {edition}", each.limit.citation
 
 
-def _static(a: Assessment) -> Iterator[tuple[str, Citation]]:
-    c, known = a.exposure.conditions, load().citations()
-    cause = best_of(a, "static")
-    wanted = [
-        f"floors.{c.floor or 'unknown'}.", f"footwear.{c.footwear or 'unknown'}.",
-        f"casters.{c.casters or 'unknown'}.", "humidity_response.",
-        *_ALWAYS, *_BY_CAUSE.get(cause or "", ()),
-    ]  # fmt: skip
-    for path, found in known.items():
-        if any(path.startswith(each) for each in wanted):
-            yield path.replace(".", " ").replace("_", " "), found
-
-
-def _mains(a: Assessment) -> Iterator[tuple[str, Citation]]:
+def _physics(a: Assessment) -> Iterator[tuple[str, Citation]]:
     """Loaded only here: the short form for the terminal prints no sources."""
     from triage.documents.electrical_sources import electrical_sources
+    from triage.documents.static_sources import static_sources
 
+    yield from static_sources(a)
     yield from electrical_sources(a)
 
 

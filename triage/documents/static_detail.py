@@ -119,8 +119,11 @@ def _discharge(a: Assessment, cause: str, spark: StaticExposure) -> Iterator[str
         f"{percent(found['seen'].value)}."
     )
     after = after_statements(spark, a.incident.statements)
+    given = f"Given that it was {', '.join(after.because)}" if after.because else (
+        "Nobody would notice it"
+    )  # fmt: skip
     yield (
-        f"Given that it was {', '.join(after.because)}: {_spread(after.voltage, 'voltage')} on "
+        f"{given}: {_spread(after.voltage, 'voltage')} on "
         f"{amount(after.capacitance.median, 'capacitance')}."
     )
     path = "metal in the hand" if spark.told.touch.held_metal else "the bare finger"

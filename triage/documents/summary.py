@@ -27,7 +27,6 @@ from triage.errors import InvalidValue
 from triage.frozen import frozen
 from triage.incident import Statement
 from triage.knowledge import knowledge
-from triage.materials import load
 from triage.next_checks import NextCheck
 from triage.physics.sensation import after_noticing
 from triage.static_exposure import StaticExposure
@@ -296,7 +295,7 @@ def _static_lines(a: Assessment) -> list[EstimateLine]:
 
 def _felt_lines(exposure: StaticExposure, name: str, rests: str) -> list[EstimateLine]:
     """Voltage and energy given that it was felt; as they are where nobody could feel it."""
-    threshold, given = load().threshold("felt"), " if felt"
+    threshold, given = exposure.threshold, " if felt"
     try:
         volts = after_noticing(exposure.voltage, exposure.charge, threshold)
         energy = after_noticing(exposure.energy, exposure.charge, threshold)
