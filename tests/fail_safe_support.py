@@ -13,6 +13,7 @@ from random_records import STATIC_STORIES, Tree, clean_tree, random_tree, record
 from triage.assessment import Assessment, assess
 from triage.care import URGENCY
 from triage.disposition import Level
+from triage.involvement import involved
 from triage.knowledge import knowledge
 from triage.site import Site, no_site
 
@@ -60,3 +61,34 @@ def only(cause: str) -> Callable[..., dict[str, float]]:
     causes = knowledge().causes
     rest = 1e-9 / (len(causes) - 1)
     return lambda *_: {c: 1 - 1e-9 if c == cause else rest for c in causes}
+
+
+def talked_down(a: Assessment) -> list[str]:
+    """Where a standing red flag does not keep its floor, or leaves the gate open."""
+    levels = {each.item: each.level for each in a.items} | {"": a.room.level}
+    found = [
+        f"{flag.flag.id} on {item or 'the place'}"
+        for flag in a.flags
+        for item in flag.open_items
+        if levels[item] < FLOOR[flag.flag.floor]
+    ]
+    return found + [
+        f"gate open beside {f.flag.id}" for f in a.flags if a.gate.open and not f.cleared
+    ]
+
+
+def wrongly_open(a: Assessment) -> list[str]:
+    """Why an open gate should be shut; nothing where it is shut."""
+    if not a.gate.open:
+        return []
+    touched, _ = involved(a.incident)
+    missing = {each.item: each.missing for each in a.items}
+    reasons = {
+        "a flag stands": any(not flag.cleared for flag in a.flags),
+        "a defect": bool(a.evidence.defects),
+        "a fail that is to be repeated": any(v.state == "invalid_fail" for v in a.verdicts),
+        "nothing was touched": not touched,
+        "a check is missing": any(missing[each.id] for each in touched),
+        "the chance of a mains fault": a.gate.upper is None or a.gate.upper >= a.gate.threshold,
+    }
+    return [reason for reason, holds in reasons.items() if holds]

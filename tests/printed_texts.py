@@ -110,8 +110,8 @@ NOISE = re.compile(
 )
 """What Python prints of its own values."""
 
-FULL_OR_NIL = re.compile(r"(?<![\d.,])(?:0|100)(?:\.0+)?\s?%(?! RH)")
-"""A probability shown as certain; the unit of humidity is another matter."""
+FULL_OR_NIL = re.compile(r"(?<![\d.,])(?:0|100)(?:\.0+)?\s?%(?! RH| of it)")
+"""A probability shown as certain; humidity and the share of a limit are another matter."""
 
 UNDERSCORED = re.compile(r"(?<![\w./-])[a-z]+(?:_[a-z0-9]+)+(?![\w/])")
 """A word of the record's closed lists, as a program writes it."""

@@ -3,8 +3,10 @@
 import pytest
 from random_records import Tree, record
 
+import triage.care
 from triage.assessment import assess
 from triage.care import URGENCY, Care, care_rows
+from triage.errors import BadTable
 from triage.site import no_site
 
 
@@ -54,8 +56,64 @@ def test_a_path_across_the_chest_or_wet_skin_at_the_mains_is_seen_the_same_day(c
     assert found.urgency == "same_day"
 
 
+@pytest.mark.parametrize("contact", [
+    {}, {"body_part": "fingertip"}, {"also_touching": "nothing"}, {"moisture": "dry"},
+])  # fmt: skip
+def test_one_dry_finger_at_the_mains_goes_the_ordinary_route(contact):
+    items = [{"id": "i", "kind": "device_mains"}]
+    found = care(items=items, contacts=[{"id": "c", "items": ["i"]} | contact])
+    assert found.urgency == "route"
+
+
+@pytest.mark.parametrize("contact", [
+    {"body_part": "both_hands"}, {"also_touching": "earthed_metal"}, {"moisture": "wet"},
+])  # fmt: skip
+def test_the_same_path_at_a_thing_without_supply_goes_the_ordinary_route(contact):
+    items = [{"id": "i", "kind": "furniture_fixed", "power": "none"}]
+    found = care(items=items, contacts=[{"id": "c", "items": ["i"]} | contact])
+    assert found.urgency == "route"
+
+
+def test_two_things_touched_at_once_are_a_path_across_the_chest():
+    items = [{"id": "i", "kind": "device_mains"}, {"id": "j", "kind": "stand"}]
+    assert care(items=items, contacts=[{"id": "c", "items": ["i", "j"]}]).urgency == "same_day"
+
+
+def test_a_patient_touched_at_that_moment_is_told_to_the_team_now():
+    found = care(contacts=[{"id": "c", "also_touching": "patient"}])
+    assert found.urgency == "now"
+    assert "patient_affected" in {row.when for row in found.rows}
+
+
+def test_a_row_for_nothing_found_is_dropped_as_soon_as_something_was():
+    assert "none" not in {row.when for row in care(persons=person(signs=["fall"])).rows}
+
+
+def test_where_published_advice_differs_a_row_names_its_sources():
+    assert any(row.sources for row in care_rows())
+    assert all(isinstance(source, str) for row in care_rows() for source in row.sources)
+
+
+@pytest.mark.parametrize("spoil", [{"urgency": "later"}, {"when": "fall"}])
+def test_a_table_with_an_unknown_urgency_or_without_a_row_for_nothing_is_refused(
+    spoil, monkeypatch
+):
+    row = {"id": "x", "when": "none", "action": "Offer a review.", "urgency": "route",
+           "citation": {"source": "s", "place": "", "known": "judgement"}}  # fmt: skip
+    for good in (True, False):
+        monkeypatch.setattr(
+            triage.care, "table", lambda _, g=good: {"care": [row if g else row | spoil]}
+        )
+        if good:
+            assert [r.when for r in care_rows.__wrapped__()] == ["none"]
+            continue
+        with pytest.raises(BadTable):
+            care_rows.__wrapped__()
+
+
 def test_over_1000_volts_is_now():
     assert care(supply={"voltage": "1000 V"}).urgency == "now"
+    assert care(supply={"voltage": "690 V"}).urgency == "route"
 
 
 def test_everybody_is_offered_a_review_and_asked_to_report_again():

@@ -200,13 +200,17 @@ def test_a_faulty_site_file_is_told_with_what_is_wrong(call, tmp_path, line, nam
 
 def test_every_fault_of_a_record_is_told_at_once_with_line_and_column(call, tmp_path) -> None:
     path = tmp_path / "bad.yaml"
-    path.write_text("schema: 1\nid: nonsense\nevent: {at: yesterday}\nitems: [{id: a, kind: spoon}]\n")
+    path.write_text(
+        "schema: 1\nid: nonsense\nevent: {at: yesterday}\nitems: [{id: a, kind: spoon}]\n"
+    )
 
     status, _, err = call("check", str(path))
 
     assert status == 1
     assert len(err.splitlines()) >= 2
-    assert all(re.match(rf"triage: {re.escape(str(path))}:\d+:\d+ \S+: ", x) for x in err.splitlines())
+    assert all(
+        re.match(rf"triage: {re.escape(str(path))}:\d+:\d+ \S+: ", x) for x in err.splitlines()
+    )
 
 
 def test_a_name_that_could_act_on_the_terminal_is_shown_as_its_code(call, tmp_path: Path) -> None:
@@ -292,7 +296,9 @@ def test_a_report_replaces_an_earlier_file_whole(call, tmp_path: Path, report_by
 def test_several_reports_go_to_a_folder_by_the_names_of_their_records(call, tmp_path) -> None:
     out_folder = tmp_path / "out"
 
-    status, out, err = call("report", HELD, SEVERE, "missing.yaml", "-o", str(out_folder), "--page-one")
+    status, out, err = call(
+        "report", HELD, SEVERE, "missing.yaml", "-o", str(out_folder), "--page-one"
+    )
 
     assert status == 1 and "missing.yaml" in err
     assert {each.name for each in out_folder.iterdir()} == {
@@ -332,7 +338,9 @@ def test_a_place_that_cannot_be_written_is_one_message_and_nothing_left(
     status, out, err = call("report", HELD, "-o", str(target), "--page-one")
 
     assert (status, out) == (1, "")
-    assert err.startswith(f"triage: {target}: ") and err.strip().endswith("name another place with -o")
+    assert err.startswith(f"triage: {target}: ") and err.strip().endswith(
+        "name another place with -o"
+    )
     assert {each.name for each in tmp_path.iterdir()} == {"file", "folder.pdf"}
     assert (tmp_path / "file").read_text() == "kept"
 

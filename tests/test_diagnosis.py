@@ -7,7 +7,9 @@ from pathlib import Path
 
 import pytest
 import yaml
+from plain_core import plain_knowledge
 
+import triage.diagnosis
 from triage.diagnosis import (
     RESIDUAL,
     Case,
@@ -136,24 +138,13 @@ def by_enumeration(
 
 def test_the_plain_core_is_bayes_rule(monkeypatch):
     """No tempering, cap, allowance or physics: prior times likelihoods over their sum."""
-    import dataclasses
-
-    import triage.diagnosis
-
-    plain_findings = {}
-    for name, row in K.findings.items():
-        logs = {s: {c: math.log(p) for c, p in r.items()} for s, r in row.likelihood.items()}
-        plain_findings[name] = dataclasses.replace(row, tempering=1.0, tempered=logs)
-    causes = {c: dataclasses.replace(v, passes_together=1e-12) for c, v in K.causes.items()}
-    plain = dataclasses.replace(
-        K, findings=plain_findings, causes=causes, cap_log=math.inf, wrong_story=0.0
-    )
+    plain = plain_knowledge()
     monkeypatch.setattr(triage.diagnosis, "knowledge", lambda: plain)
     for seed in range(200):
         rng = random.Random(seed)
         priors = random_priors(rng)
         observed = [
-            Observed(plain_findings[o.finding.id], o.state, o.measured, "said")
+            Observed(plain.findings[o.finding.id], o.state, o.measured, "said")
             for o in random_observed(rng)
         ]
         raw = [
@@ -170,7 +161,7 @@ TEMPERING = yaml.safe_load(
 
 
 def test_the_full_formula_equals_brute_force_over_random_findings():
-    for seed in range(250):
+    for seed in range(2000):
         rng = random.Random(seed)
         priors, observed = random_priors(rng), random_observed(rng)
         factors = {c: math.exp(rng.uniform(-3, 1.5)) for c in rng.sample(CAUSES, 9)}
@@ -257,6 +248,15 @@ def test_weights_add_up_to_the_posterior_odds_of_the_pair():
         )
 
 
+def test_the_table_of_weights_names_each_line():
+    observed = [Observed(K.findings["sensation"], "snap", False, "said")]
+    case = build_case(prior("ward", "earthed", no_site()), observed, {})
+    found = [w.label for w in weigh(case, observed, ("person_walking", "open_earth"))]
+    assert found == ["prior", "physics", f"{K.findings['sensation'].name}: snap",
+                     "limit on one group of answers", "passes counted together",
+                     "allowance for a wrong story"]  # fmt: skip
+
+
 def test_a_conflict_is_the_chance_of_a_finding_against_its_chance_given_the_others():
     for seed in range(200):
         rng = random.Random(seed)
@@ -313,6 +313,19 @@ def test_an_area_that_is_not_known_takes_the_mean_of_all():
     found = prior(None, None, no_site())
     for cause in CAUSES:
         assert found[cause] == pytest.approx(sum(r[cause] for r in rows) / len(rows), abs=1e-12)
+
+
+def test_an_area_that_may_have_an_isolated_supply_has_a_prior_for_either_supply():
+    for area, rows in K.area_priors.items():
+        for supply in ("earthed", "isolated"):
+            row = K.priors[rows[supply]]
+            found = prior(area, supply, no_site())
+            assert [found[c] for c in CAUSES] == pytest.approx([row[c] for c in CAUSES], abs=1e-12)
+    earthed = prior("operating_room", "earthed", no_site())
+    assert earthed["isolated_first_fault"] < 0.002
+    assert prior("operating_room", None, no_site()) == prior(
+        "operating_room", "isolated", no_site()
+    )
 
 
 def test_a_site_raises_mains_causes_and_nothing_else():

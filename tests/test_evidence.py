@@ -99,6 +99,38 @@ def test_damage_liquid_and_heat_seen_are_defects():
         assert [(d.item, d.check) for d in evidence(tree).defects] == [("cord", "condition")]
 
 
+def test_damage_seen_speaks_for_damage_and_never_against_a_bare_live_part():
+    """A crushed cord seen on arrival must not count as "no bare part was seen"."""
+    tree = story()
+    assert state(evidence(tree), "live_part_exposed") == "no"
+    tree["checks"] = []
+    for item in (0, 1):  # the pump touched, and the cord it hangs on
+        found = story()
+        found["checks"], found["items"][item]["condition"] = [], ["damaged"]
+        seen = evidence(found)
+        assert (state(seen, "visible_damage"), seen.observed["visible_damage"].measured) == (
+            "yes",
+            False,
+        )
+        assert state(seen, "live_part_exposed") == (None if item == 0 else "no")
+    assert state(evidence(tree), "visible_damage") is None  # intact at a glance is no inspection
+
+
+def test_a_bare_part_and_the_damage_around_it_are_one_finding():
+    tree = story()
+    tree["checks"], tree["items"][0]["condition"] = [], ["damaged", "live_part"]
+    found = evidence(tree)
+    assert state(found, "live_part_exposed") == "yes"
+    assert state(found, "visible_damage") is None
+
+
+def test_a_passed_inspection_does_not_take_damage_seen_off_the_record():
+    tree = story()
+    tree["items"][1]["condition"] = ["damaged"]
+    assert {c["kind"] for c in tree["checks"]} >= {"visual_inspection"}
+    assert state(evidence(tree), "visible_damage") == "yes"
+
+
 def test_an_as_left_reading_is_no_finding_about_the_event():
     tree = story("plate")
     left = passing_check("m", "static_reenactment", tree["items"][0]) | {"stage": "as_left"}

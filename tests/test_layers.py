@@ -23,7 +23,7 @@ ROWS = [
     {"electrical_tables", "knowledge", "limits", "material_rows", "questions", "static_limits"},
     {"materials", "static_readings", "verdict", "walking_file"},
     {"check_table"},
-    {"in_force"},
+    {"in_force", "paper_texts"},
     {"validity"},
     {"site_check", "involvement", "logs"},
     {"told"},
@@ -43,7 +43,7 @@ ROWS = [
     {"typeset"},
     {"render"},
     {"documents"},
-    {"form", "sheet", "verify"},
+    {"form", "log_command", "sheet", "verify"},
     {"cli"},
     {"__main__"},
 ]

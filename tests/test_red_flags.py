@@ -4,7 +4,7 @@ import copy
 import random
 
 import pytest
-from random_records import Tree, clean_tree, passing_check, record
+from random_records import FAILING, Tree, clean_tree, passing_check, record
 
 from triage.assessment import Assessment, assess
 from triage.disposition import Level
@@ -167,3 +167,88 @@ def test_a_statement_that_others_contradict_still_raises_its_flag():
     tree = clean_tree(random.Random(6), "plate")
     tree["statements"].append({"id": "s2", "sensation": "grip"})
     assert standing(judged(tree), "could_not_let_go").open_items == ("plate",)
+
+
+@pytest.mark.parametrize(("condition", "flag_id"), [
+    ("hot", "hot_or_smoking"), ("damaged", "damage"), ("live_part", "damage"),
+    ("altered", "altered_or_missing"), ("missing", "altered_or_missing"),
+])  # fmt: skip
+def test_a_flag_of_a_condition_stands_on_the_items_in_that_condition_only(condition, flag_id):
+    tree = clean_tree(random.Random(7), "device")
+    tree["items"][1]["condition"] = [condition]
+    assert standing(judged(tree), flag_id).items == ("cord",)
+
+
+def test_a_disputed_unit_stands_on_the_item_that_was_read():
+    tree = clean_tree(random.Random(8), "device")
+    check = next(c for c in tree["checks"] if c["of"] == "outlet")
+    check["unit_disputed"] = "yes"
+    assert standing(judged(tree), "unit_disputed").items == ("outlet",)
+    check["of"] = "unknown"
+    assert standing(judged(tree), "unit_disputed").items == ("pump",)
+
+
+def test_a_flag_of_the_circuit_stands_on_circuits_and_outlets_and_else_on_what_was_touched():
+    for story, wanted in (("isolated_device", ("socket",)), ("plate", ("plate",))):
+        tree = clean_tree(random.Random(9), story)
+        tree["supply"]["alarm"] = "yes"
+        assert standing(judged(tree), "monitor_alarm").items == wanted
+
+
+@pytest.mark.parametrize("beside", [
+    {"value": FAILING["metal_voltage_loaded"], "result": "fail"},
+    {"value": FAILING["metal_voltage_loaded"], "result": "fail", "calibration_due": "2020-01-01"},
+])  # fmt: skip
+def test_a_pass_beside_a_fail_of_the_same_check_clears_nothing(beside):
+    tree = cleared_record(FLAGS["others_felt"], "cart")
+    assert standing(judged(tree), "others_felt").cleared
+    tree["checks"].append(passing_check("z", "metal_voltage_loaded", tree["items"][0]) | beside)
+    assert not standing(judged(tree), "others_felt").cleared
+
+
+def test_a_pass_as_left_clears_nothing():
+    tree = cleared_record(FLAGS["others_felt"], "cart")
+    for check in tree["checks"]:
+        if check["kind"] == "metal_voltage_loaded":
+            check["stage"] = "as_left"
+    assert not standing(judged(tree), "others_felt").cleared
+
+
+@pytest.mark.parametrize("spoil", [
+    {"value": "1000 V"}, {"value": "<6 kV"}, {"stage": "as_left"}, {"calibration_due": "2020-01-01"},
+    {"of": "other"},
+])  # fmt: skip
+def test_only_a_valid_reading_of_that_object_above_the_mark_clears(spoil):
+    tree = cleared_record(FLAGS["others_felt"], "cart")
+    tree["items"].append({"id": "other", "kind": "cart", "power": "none"})
+    assert standing(judged(tree), "others_felt").cleared
+    for check in tree["checks"]:
+        if check["kind"] == "object_voltage_after_rolling":
+            check |= spoil
+    assert not standing(judged(tree), "others_felt").cleared
+
+
+def test_on_an_isolated_supply_the_line_and_alarm_tests_stand_in_for_the_outlet_test():
+    flag = FLAGS["lasting_sensation"]
+    tree = raised(flag.id, clean_tree(random.Random(10), "isolated_device"))
+    item = tree["items"][0]
+    kept = [k for k in flag.passes if k != "outlet_test"]
+    instead = ["isolated_line_voltages", "isolated_alarm_test"]
+    tree["checks"] = [passing_check(f"y{k}", k, item) for k in kept]
+    tree["checks"] += [passing_check(f"y{k}", k, tree["items"][1]) for k in instead]
+    assert standing(judged(tree), flag.id).cleared
+    for missing in instead:
+        without = [c for c in tree["checks"] if c["kind"] != missing]
+        assert not standing(judged(tree | {"checks": without}), flag.id).cleared
+
+
+def test_what_raised_a_flag_and_what_would_clear_it_are_said_in_words():
+    tree = raised("burn", clean_tree(random.Random(11), "plate"))
+    found = standing(judged(tree), "burn")
+    assert "burn" in found.because
+    assert found.missing.startswith("not cleared by this program")
+    tree = raised("others_felt", clean_tree(random.Random(12), "cart"))
+    found = standing(judged(tree), "others_felt")
+    assert found.because == f"{knowledge().findings['others_felt'].name}: yes"
+    assert "object voltage after rolling above" in found.missing
+    assert f"signed by {FLAGS['others_felt'].role}" in found.missing

@@ -9,7 +9,6 @@ from triage.clock import hours_between
 from triage.errors import OutOfRange
 from triage.incident import Incident, Item
 from triage.involvement import OBJECTS, is_powered
-from triage.physics.capacitance import plate_over_floor
 from triage.physics.humidity import Humidity, transfer_doubt, transferred
 from triage.quantity import parse
 from triage.site import Site
@@ -152,6 +151,8 @@ def _capacitance(objects: list[Item]) -> tuple[float | None, str]:
     sizes = [each for each in (only.length, only.width, only.clearance) if each and not each.bound]
     if len(sizes) < 3:
         return None, ""
+    from triage.physics.capacitance import plate_over_floor  # rare; start-up is paid by all
+
     length, width, clearance = (each.value for each in sizes)
     return plate_over_floor(length * width, clearance), "geometry"
 

@@ -42,6 +42,10 @@ class CannotRead(TriageError):
     """A file that cannot be read."""
 
 
+class CannotTell(TriageError):
+    """A file that can be read in more than one way; the text names the option that decides."""
+
+
 class CannotWrite(TriageError):
     """A file that cannot be written."""
 

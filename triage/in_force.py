@@ -30,13 +30,37 @@ def held_against_limits(
     source = limits_from(check, kind)
     if source is None or value is None or value.value < 0:
         return ()
-    named = (kind.id, _FOLLOWS.get(kind.id))
-    chosen = next((e.edition for e in site.file.editions if e.check in named and e.edition), None)
+    chosen = _edition_named(kind, site)
     rows = _rows(check, item, source=source, edition=chosen, quantity=value.kind) or _rows(
         check, item, source=source, edition=source.edition, quantity=value.kind
     )
     sign = value.text[0] if value.text[0] in "≤≥" else value.bound
     return judge(value.value, sign, tuple(tightened(row, site) for row in rows))
+
+
+def _edition_named(kind: CheckKind, site: Site) -> str | None:
+    """The edition that the site file names for a kind of check."""
+    named = (kind.id, _FOLLOWS.get(kind.id))
+    return next((e.edition for e in site.file.editions if e.check in named and e.edition), None)
+
+
+def limits_of_kind(kind: CheckKind, site: Site) -> tuple[Limit, ...]:
+    """Every limit that a reading of one kind of check can be held against at a site.
+
+    Args:
+        kind: its row in the table of checks.
+        site: may choose an edition and make limits stricter.
+    """
+    found: dict[str, Limit] = {}
+    for source in kind.limits_from:
+        for edition in (_edition_named(kind, site), source.edition):
+            rows = edition in load_limits().editions and load_limits().find(
+                check=source.check, edition=edition, method=source.method, kind=kind.quantity
+            )
+            if rows:
+                found.update((row.id, tightened(row, site)) for row in rows)
+                break
+    return tuple(found.values())
 
 
 def limits_from(check: Check, kind: CheckKind) -> LimitsFrom | None:

@@ -33,7 +33,7 @@ _OUTLET_ROW = {
 }
 _IN_HOSPITAL = ("medical", "installation")
 """Scopes of the editions that a hospital can have in force."""
-_MONITOR = ("monitor_log", "isolated_alarm_test")
+MONITOR_CHECKS = ("monitor_log", "isolated_alarm_test")
 """Checks whose edition gives the alarm value of the monitor."""
 _COLLAPSES = 0.1
 """Share of the open voltage left under load below which a source counts as capacitive (judgement:
@@ -251,7 +251,9 @@ def alarm_thresholds(incident: Incident, site: Site) -> tuple[Threshold, ...]:
 def _edition_in_force(rows: list[Limit], site: Site) -> tuple[str, str]:
     """Edition of the site, or the first of the table, and which of the two it is."""
     ids = [row.edition.id for row in rows]
-    named = [e.edition for e in site.file.editions if e.check in _MONITOR and e.edition in ids]
+    named = [
+        e.edition for e in site.file.editions if e.check in MONITOR_CHECKS and e.edition in ids
+    ]
     return (str(named[0]), "named") if named else (ids[0] if ids else "", "taken")
 
 

@@ -5,7 +5,7 @@ One file meets two standards: PDF/A-3 level A (ISO 19005-3) for the archive and 
 """
 
 import os
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from functools import cache
@@ -19,6 +19,7 @@ from triage.typeset import (
     base_url,
     covered,
     finish,
+    finish_form,
     fonts,
     guarded,
     own_files,
@@ -93,21 +94,47 @@ def render_pdf(
         InvalidValue: the document names a file or address that is not the package's own.
         MissingLibrary: pango is not installed.
     """
+    return _pdf(
+        html, title=title, variant="pdf/a-3a", finisher=finish, pdf_identifier=identifier,
+        attachments=[_attached(each) for each in attachments],
+    )  # fmt: skip
+
+
+def render_form(html: str, *, title: str, identifier: bytes) -> RenderedPdf:
+    """Turn a document with fields into a file that can be filled in on a screen (PDF/UA-1).
+
+    Fields and the archive exclude each other: PDF/A wants a fixed appearance of every field.
+
+    Args:
+        html: what `render_html` gave; its `input` and `textarea` become fields.
+        title: shown in the window's title bar, read out first.
+        identifier: bytes of the file's /ID.
+
+    Raises:
+        InvalidValue: the document names a file or address that is not the package's own.
+        MissingLibrary: pango is not installed.
+    """
+    return _pdf(
+        html, title=title, variant="pdf/ua-1", finisher=finish_form, pdf_identifier=identifier,
+        pdf_forms=True,
+    )  # fmt: skip
+
+
+def _pdf(
+    html: str, *, title: str, variant: str, finisher: Callable[[Any, Any], None], **options: Any
+) -> RenderedPdf:
     configuration, faces = fonts()
     printable, missing = _mark_uncovered(html)
     with guarded() as remarks:
         document = (
             weasyprint()
             .HTML(string=printable, base_url=base_url(), url_fetcher=own_files())
-            .render(font_config=configuration, stylesheets=[faces], pdf_variant="pdf/a-3a")
+            .render(
+                font_config=configuration, stylesheets=[faces], pdf_variant=variant, **options
+            )
         )
         document.metadata.title = visible(title)
-        content = document.write_pdf(
-            finisher=finish,
-            pdf_variant="pdf/a-3a",
-            pdf_identifier=identifier,
-            attachments=[_attached(each) for each in attachments],
-        )
+        content = document.write_pdf(finisher=finisher, pdf_variant=variant, **options)
     return RenderedPdf(content, missing, tuple(remarks))
 
 

@@ -67,6 +67,8 @@ class Room(Part):
     footwear: str | None = word("Footwear worn there by rule.", w.FOOTWEAR)
     casters: str | None = word("Usual wheels there.", w.CASTERS)
     sensor: str | None = text("Humidity sensor that serves it.", 80)
+    sensor_doubt: Quantity | None = amount("Its standard uncertainty.", "humidity_points",
+                                           possible=(0, 20))  # fmt: skip
     humidity_ceiling: Quantity | None = amount("Highest humidity allowed.", "relative_humidity",
                                                possible=(0, 100))  # fmt: skip
     outlet_group: str | None = text("Outlet group or panel.", 80)
@@ -155,6 +157,14 @@ class Cost(Part):
 
 
 @record_part
+class PaperText(Part):
+    """One sentence of the papers in the site's language."""
+
+    id: str = ident("Id of the sentence in the catalogue of the papers.", required=True)
+    text: str | None = text("The sentence in the language of this file.", 600)
+
+
+@record_part
 class SiteFile(Part):
     """The facility's own file."""
 
@@ -174,6 +184,7 @@ class SiteFile(Part):
     retention: Retention = part("Retention.", Retention)
     costs: tuple[Cost, ...] = parts("Costs.", Cost)
     approvals: tuple[Approval, ...] = parts("Approvals.", Approval)
+    papers: tuple[PaperText, ...] = parts("Sentences of the papers.", PaperText, 1000)
 
 
 @frozen
@@ -269,6 +280,7 @@ def _check(reader: Reader, file: SiteFile) -> None:
     _check_once(reader, "editions", [each.check for each in file.editions])
     _check_once(reader, "tightened", [each.limit for each in file.tightened])
     _check_once(reader, "policy.raised", [each.cause for each in file.policy.raised])
+    _check_once(reader, "papers", [each.id for each in file.papers])
 
 
 def _check_once(reader: Reader, path: str, ids: list[str]) -> None:

@@ -1,7 +1,7 @@
 """What static charge was physically possible: voltage, charge, energy, P(felt) for each cause."""
 
 from dataclasses import dataclass, replace
-from functools import lru_cache
+from functools import cache, lru_cache
 
 from triage.bounds import Probability, Reading
 from triage.conditions import Conditions, Touch
@@ -12,14 +12,16 @@ from triage.physics.charging import Charged, in_series, leaking, moving, quick_a
 from triage.physics.discharge import in_series as shared_capacitance
 from triage.physics.discharge import to_floating
 from triage.physics.humidity import Humidity
-from triage.physics.induction import beside
 from triage.physics.sensation import perceived
 from triage.static_readings import beyond, measured, taken
 
 STATIC_CAUSES = ("person_walking", "person_rising", "charged_object")
 """Static causes whose model weighs in the ranking; induction has one for print only."""
 _PLATEAU_STEPS = 40
-_EARTHING = (("conductive", "dissipative"), ("esd", "antistatic"))
+_WITH_CONTACT = 4  # nodes for each of three directions on a good path: within 1 % of 6 nodes
+_EARTHING_FLOORS = ("conductive", "dissipative")
+_EARTHING_SHOES = ("esd", "antistatic")
+_EARTHING_WHEELS = ("conductive", "antistatic")
 
 
 @dataclass(frozen=True, slots=True)
@@ -41,6 +43,10 @@ class Measured:
     floor: Reading | None = None
     footwear: Reading | None = None
     casters: Reading | None = None
+
+
+NOTHING_READ = Measured()
+"""No static reading on record."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -131,7 +137,7 @@ class StaticExposure:
     @property
     def threshold(self) -> Estimate:
         """Charge at which such a spark is felt [C]."""
-        return load().threshold("felt", held_metal=self.told.touch.held_metal)
+        return _threshold(self.told.touch.held_metal)
 
 
 def story(
@@ -148,7 +154,7 @@ def story(
     humidity = conditions.humidity or defaults.humidity
     if humidity is None:
         raise InvalidValue("the default conditions must name a humidity")
-    return StaticStory(
+    told = StaticStory(
         cause,
         conditions.floor or defaults.floor or "unknown",
         conditions.footwear or defaults.footwear or "unknown",
@@ -160,6 +166,10 @@ def story(
         conditions.touch,
         readings,
     )
+    if conditions.pause is None and cause != "person_rising" and _earthing(told):
+        # Walking charges to tens of volts there, never felt; with no pause they stay readable.
+        return replace(told, pause=0.0)
+    return told
 
 
 @lru_cache(maxsize=4096)
@@ -168,7 +178,8 @@ def static_exposure(told: StaticStory, order: int | None = None) -> StaticExposu
 
     Args:
         told: the conditions.
-        order: nodes for each direction a formula resolves; 6 for many stories, None for one.
+        order: nodes for each direction a formula resolves; 5 for many stories (P(felt) is then
+            within 1e-3), None for one.
 
     Raises:
         OutOfRange: an input outside what the formulas were published for.
@@ -176,8 +187,13 @@ def static_exposure(told: StaticStory, order: int | None = None) -> StaticExposu
     """
     body, other = _body(told, order), _opposite(told)
     charge = body.charge if other is None else _passing(body, other)
-    threshold = load().threshold("felt", held_metal=told.touch.held_metal)
-    return StaticExposure(told, body, other, charge, perceived(charge, threshold))
+    felt = perceived(charge, _threshold(told.touch.held_metal))
+    return StaticExposure(told, body, other, charge, felt)
+
+
+@cache
+def _threshold(held_metal: bool) -> Estimate:
+    return load().threshold("felt", held_metal=held_metal)
 
 
 def _passing(body: Charged, other: Estimate) -> Estimate:
@@ -217,7 +233,11 @@ def _modelled(told: StaticStory, order: int | None) -> Charged:
         mover = m.roller(told.floor, _wheels(told), told.humidity, body="cart")
     else:
         mover = m.walker(told.floor, told.footwear, told.humidity)
-    mover = replace(mover, resistances=_path(told), capacitance=_own(told))
+    mover = replace(mover, capacitance=_own(told))
+    if told.readings != NOTHING_READ:
+        mover = replace(mover, resistances=_path(told))
+    if mover.contact is not None and order is None:
+        order = _WITH_CONTACT
     return moving(mover, seconds=_seconds(told), pause=told.pause, order=order)
 
 
@@ -226,8 +246,7 @@ def _acted(told: StaticStory) -> Charged:
     m, act = load(), told.touch.act
     if told.wiped:
         return _surface(m.act_voltage(act, told.humidity), told)
-    good_path = told.floor in _EARTHING[0] and told.footwear in _EARTHING[1]
-    named = f"{act}_earthing" if good_path and f"{act}_earthing" in m.acts else act
+    named = f"{act}_earthing" if _earthing(told) and f"{act}_earthing" in m.acts else act
     charged = quick_act(
         m.act_charge(named, told.humidity),
         _own(told),
@@ -235,6 +254,12 @@ def _acted(told: StaticStory) -> Charged:
         corona_limit=m.walking["corona_limit"].median,
     )
     return leaking(charged, resistance=in_series(*_path(told)), seconds=told.pause)
+
+
+def _earthing(told: StaticStory) -> bool:
+    """Whether floor and shoes, or floor and wheels, are both made to lead charge away."""
+    shod = told.casters in _EARTHING_WHEELS if told.of_object else told.footwear in _EARTHING_SHOES
+    return told.floor in _EARTHING_FLOORS and shod
 
 
 def _surface(voltage: Estimate, told: StaticStory) -> Charged:
@@ -245,6 +270,8 @@ def _surface(voltage: Estimate, told: StaticStory) -> Charged:
 
 def _induced(told: StaticStory) -> Charged:
     """A person who floats beside a charged plastic."""
+    from triage.physics.induction import beside  # rare; start-up is paid by every command
+
     m = load()
     source = Charged(m.act_voltage("wipe_plastic", told.humidity).times(m.doubt(), "V"),
                      m.coupling())  # fmt: skip

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from triage import words as w
 from triage.fields import WordList
 from triage.incident import Contact, Incident, Item, Statement
-from triage.involvement import OBJECTS
+from triage.involvement import OBJECTS, involved
 from triage.knowledge import Finding, knowledge
 from triage.validity import is_wet
 
@@ -57,7 +57,8 @@ def _told_states(
     yield "touched", _touched_state(touched), "seen"
     yield "wet_contact", _wet_contact(incident, touched), "said"
     yield "liquid_in_item", _seen_on(touched, "wet"), "seen"
-    yield "live_part_exposed", _seen_on(touched, "live_part"), "seen"
+    yield "live_part_exposed", _live_part(touched), "seen"
+    yield "visible_damage", _damage(incident, touched), "seen"
     yield "second_contact", _second_contact(incident.contacts), "said"
     if place.area not in (None, "operating_room"):
         yield "glove", _glove(incident.contacts), "said"
@@ -162,6 +163,24 @@ def _seen_on(touched: tuple[Item, ...], condition: str) -> str | None:
         return "yes"
     looked = all({"intact", "damaged"} & set(item.condition) for item in touched)
     return "no" if touched and looked else None
+
+
+def _live_part(touched: tuple[Item, ...]) -> str | None:
+    """Whether a bare live part was seen; damage seen does not mean that no part lay bare."""
+    if any("live_part" in item.condition for item in touched):
+        return "yes"
+    return "no" if touched and all("intact" in item.condition for item in touched) else None
+
+
+def _damage(incident: Incident, touched: tuple[Item, ...]) -> str | None:
+    """Damage seen on what was touched or on its cord or outlet, unless a bare part says the same.
+
+    Only a valid inspection may say that there is none.
+    """
+    _, linked = involved(incident)
+    if _live_part(touched) == "yes":
+        return None
+    return "yes" if any("damaged" in item.condition for item in touched + linked) else None
 
 
 def _second_contact(contacts: tuple[Contact, ...]) -> str | None:

@@ -262,6 +262,13 @@ def finish(_document: Any, pdf: Any) -> None:
             each["A"]["Scope"] = _scope(pdf, each)
 
 
+def finish_form(_document: Any, pdf: Any) -> None:
+    """Add the direction of header cells to a PDF/UA-1 file with fields."""
+    for each in pdf.objects:
+        if isinstance(each, dict) and each.get("S") == "/TH":
+            each["A"]["Scope"] = _scope(pdf, each)
+
+
 def _clearly_ended(written: Callable[[Any], bytes]) -> Callable[[Any], bytes]:
     """End every stream by CR LF, and write it once.
 

@@ -3,6 +3,7 @@
 import re
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, replace
+from importlib.resources import files
 from typing import Any
 
 from triage.citation import KNOWN, Citation
@@ -25,11 +26,12 @@ GROUPS = {
     "care": "Care of the person",
     "cautions": "Cautions",
     "duties": "Duties",
+    "look_back": "Look-back after a defect",
 }
-"""Tables in the order they are printed, and what each holds."""
+"""Tables in the order they are printed, and what each holds; any other follows by its name."""
 _SAID = ("text", "name", "action", "what", "rule", "condition", "test", "meaning", "output")
 _ASIDE = frozenset({"citation", "source", "place", "known", "note", "cite", "id", "why", "how",
-                    "citations", "year", "clause", "warning"})  # fmt: skip
+                    "citations", "year", "warning", "example", "examples"})  # fmt: skip
 _NUMBER = re.compile(r"[<>≤≥]?\s*[-+−]?[0-9]")
 
 
@@ -63,7 +65,7 @@ def rows(known: str | None = None) -> Iterator[Row]:
     """
     if known is not None and known not in KNOWN:
         raise InvalidValue(f"'{known}' does not say how a number is known; use {', '.join(KNOWN)}")
-    for group in GROUPS:
+    for group in _groups():
         for row in _of(group):
             if known in (None, row.citation.known):
                 yield row
@@ -75,10 +77,17 @@ def as_lines(known: str | None = None) -> Iterator[str]:
     for row in rows(known):
         found.setdefault(row.group, []).append(row)
     for group, those in found.items():
-        yield f"{GROUPS[group]} (data/{group}.yaml, {len(those)})"
+        yield f"{GROUPS.get(group, group)} (data/{group}.yaml, {len(those)})"
         yield from (f"  {row.text()}" for row in those)
     counted = {each: sum(r.citation.known == each for r in rows(known)) for each in KNOWN}
     yield "; ".join(f"{how} {count}" for how, count in counted.items())
+
+
+def _groups() -> list[str]:
+    """Every table there is."""
+    data = files("triage") / "data"
+    there = {each.name[:-5] for each in data.iterdir() if each.name.endswith(".yaml")}
+    return [*(name for name in GROUPS if name in there), *sorted(there - set(GROUPS))]
 
 
 def _of(group: str) -> Iterator[Row]:
@@ -163,9 +172,17 @@ def _shown(value: Any) -> str:
     return f"{value:g}" if isinstance(value, float) else str(value)
 
 
+def _listed(value: Any) -> list[Any]:
+    return value if isinstance(value, list) else [value]
+
+
 def _said(node: Mapping[str, Any]) -> str:
-    return next((" ".join(str(node[key]).split()).rstrip(".") for key in _SAID if node.get(key)),
-                "")  # fmt: skip
+    """What a row says: its main text, or else its first one."""
+    texts = [node[key] for key in _SAID if node.get(key)]
+    for key, value in node.items():
+        if key not in _ASIDE:
+            texts += [each for each in _listed(value) if isinstance(each, str)]
+    return " ".join(str(texts[0]).split()).rstrip(".") if texts else ""
 
 
 def _name(path: tuple[str, ...], node: Mapping[str, Any]) -> str:

@@ -38,6 +38,7 @@ def as_data(a: Assessment, s: Summary, earlier: History | None = None) -> dict[s
             {"item": d.item, "check": d.check, "text": d.text} for d in a.evidence.defects
         ],
         "causes": _causes(a),
+        "undetermined": 1 - sum(a.posterior.of(each) for each in a.posterior.ranked),
         "firmness": a.sensitivity.firmness,
         "mains": {"low": a.sensitivity.mains.low, "point": a.sensitivity.mains.point,
                   "high": a.sensitivity.mains.high},

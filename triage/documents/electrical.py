@@ -66,7 +66,7 @@ def electrical_lines(a: Assessment) -> Iterator[str]:
 def _closing_lines(a: Assessment, found: tuple[ContactExposure, ...]) -> Iterator[str]:
     yield from ceiling_lines(a)
     yield from _measured_lines(a, found)
-    yield from _spark_lines(found)
+    yield from dict.fromkeys(_spark_lines(found))
     yield from _volt_lines(a)
     yield from sight_lines(a, found)
 
@@ -134,8 +134,11 @@ def _rows(found: ContactExposure, a: Assessment) -> list[list[str]]:
     for row in _ranked(found, a):
         groups.setdefault(_cells(row), []).append(names[row.exposure.cause].name)
     rows = [["; ".join(causes), *cells] for cells, causes in groups.items()]
-    return rows + [[names[cause].name, "not known", "", "", "", why]
-                   for cause, why in found.unknown]  # fmt: skip
+    reasons: dict[str, list[str]] = {}
+    for cause, why in found.unknown:
+        reasons.setdefault(why, []).append(names[cause].name)
+    return rows + [["; ".join(causes), "no estimate", "", "", "", why]
+                   for why, causes in reasons.items()]  # fmt: skip
 
 
 def _table(found: ContactExposure, a: Assessment) -> Block:

@@ -1,7 +1,5 @@
 """The incident report: one document for the risk office, facts and analysis apart."""
 
-import os
-import tempfile
 from pathlib import Path
 from typing import Any
 
@@ -12,8 +10,8 @@ from triage.documents.facts import facts_sections
 from triage.documents.page_one import page_one
 from triage.documents.sources import source_lines
 from triage.documents.summary import Summary, summarise, watch_line
+from triage.documents.whole_file import write_whole
 from triage.documents.wording import room_name, spoken
-from triage.errors import CannotWrite
 from triage.render import Attachment, render_html, render_pdf
 from triage.tables import table
 
@@ -168,35 +166,8 @@ def write_report(a: Assessment, target: Path, *, page_one_only: bool = False) ->
         render_html("incident_report.html", made), title=made["title"], attachments=attached,
         identifier=bytes.fromhex(a.record.digest)[:16],
     )  # fmt: skip
-    _write(target, pdf.content)
+    write_whole(target, pdf.content)
     if pdf.missing_glyphs:
         count = len(pdf.missing_glyphs)
         return (f"{count} characters have no glyph here and are printed as codes",)
     return ()
-
-
-def _write(target: Path, content: bytes) -> None:
-    """Write a file so that it is there whole or not at all."""
-    try:
-        target.parent.mkdir(parents=True, exist_ok=True)
-        handle, name = tempfile.mkstemp(dir=target.parent, prefix=".", suffix=".part")
-        try:
-            with os.fdopen(handle, "wb") as file:
-                file.write(content)
-                file.flush()
-                os.fsync(file.fileno())
-            os.chmod(name, 0o666 & ~_umask())
-            os.replace(name, target)
-        except BaseException:
-            Path(name).unlink(missing_ok=True)
-            raise
-    except OSError as error:
-        reason = error.strerror or "cannot be written"
-        raise CannotWrite(f"{target}: {reason}; name another place with -o") from None
-
-
-def _umask() -> int:
-    """What the user withholds from new files; it can only be read by setting it."""
-    mask = os.umask(0o077)
-    os.umask(mask)
-    return mask

@@ -116,7 +116,7 @@ def _electrical(a: Assessment) -> Iterator[tuple[str, list[str]]]:
 
 
 def _wrapped(text: str) -> list[str]:
-    return wrap(text.replace("\u00a0", " "), WIDTH, initial_indent="  ", subsequent_indent="  ")
+    return _hung("", text)
 
 
 def _items(lines: tuple[str, ...] | list[str]) -> list[str]:
@@ -130,4 +130,5 @@ def _numbered(lines: tuple[str, ...] | list[str], start: int = 1) -> list[str]:
 def _hung(mark: str, line: str) -> list[str]:
     indent = "  " + " " * len(mark)
     text = line.replace("\u00a0", " ")
-    return wrap(text, WIDTH, initial_indent=f"  {mark}", subsequent_indent=indent)
+    return wrap(text, WIDTH, initial_indent=f"  {mark}", subsequent_indent=indent,
+                break_on_hyphens=False)  # ids of items hold hyphens  # fmt: skip

@@ -8,6 +8,7 @@ from triage.limits import Limit
 from triage.physics.touch_current import Mains
 from triage.quantity import worded
 from triage.reading_guide import (
+    MONITOR_CHECKS,
     IsolatedTest,
     Lines,
     Loaded,
@@ -25,6 +26,7 @@ from triage.reading_guide import (
 from triage.validity import CheckVerdict
 from triage.verdict import Comparison, Judgement
 
+_DEFAULT = "the program's default"
 _VERDICT = {"pass": "kept", "fail": "not kept", "undecided": "left open by the reading"}
 
 
@@ -146,11 +148,10 @@ def _thresholds(found: tuple[Threshold, ...]) -> Iterator[str]:
 def _threshold(found: Threshold) -> str:
     row = found.limit
     side = {"pass": "not reached", "fail": "reached", "undecided": "left open by the reading"}
-    force = {"named": ", in force here", "taken": ", taken here, since the site names no edition",
-             "other": ", not in force here"}[found.standing]  # fmt: skip
+    standing = {"named": "in force here", "taken": _DEFAULT, "other": "not in force here"}
     warning = f", {row.warning}" if row.warning else ""
     return (
-        f"{row.edition.text()}{force}, {row.text.replace(' ', NBSP)}: "
+        f"{row.edition.text()}, {standing[found.standing]}, {row.text.replace(' ', NBSP)}: "
         f"{side[found.comparison.verdict]}{_room(found.comparison)}{warning}"
     )
 
@@ -182,8 +183,9 @@ def _limit_line(v: CheckVerdict, judged: Judgement, a: Assessment) -> str:
 
 def _force(v: CheckVerdict, a: Assessment) -> str:
     kind = v.kind.id if v.kind else ""
-    named = any(e.check == kind and e.edition for e in a.site.file.editions)
-    return "in force here" if named else "taken here, since the site names no edition"
+    checks = MONITOR_CHECKS if kind in MONITOR_CHECKS else (kind,)
+    named = any(e.check in checks and e.edition for e in a.site.file.editions)
+    return "in force here" if named else _DEFAULT
 
 
 def _other_line(v: CheckVerdict, judged: Judgement, a: Assessment) -> str:

@@ -78,7 +78,11 @@ def static_alerts(a: Assessment) -> Iterator[str]:
     known = [e for name in STATIC_CAUSES if (e := a.exposure.causes[name].static) is not None]
     for each in ignitions(a.incident, known) if a.care.ignition else ():
         vapour = each.fuel.replace("_", " ")
-        what = f"{vapour} in enriched air" if each.oxygen else f"{vapour} vapour in air"
+        what = (
+            f"a vapour in enriched air ({vapour} is the easiest on file)"
+            if each.oxygen
+            else f"{vapour} vapour in air"
+        )
         yield (
             f"Fire: {what} lights from {amount(each.minimum, 'energy')}; a spark that was felt "
             f"carries more with {percent(each.chance)} (the best mixture at the spark is taken)."

@@ -45,6 +45,8 @@ _URGENCY_LEAD = {
 }
 _FIRE = "Vapour or oxygen within reach of the spark: a fire matter, whatever the cause."
 _SHOES = {word: meaning.split(",")[0] for word, (_, meaning) in FOOTWEAR.items()}
+_OTHER_TOLD = 0.05
+"""From here on the share of no named cause is told (judgement: below, it moves nothing)."""
 METHOD_NOTE = (
     "The likelihoods behind the ranking are judged; no measured frequencies stand behind them."
 )
@@ -238,6 +240,9 @@ def cause_lines(a: Assessment, most: int = 5) -> tuple[CauseLine, ...]:
 def causes_note(a: Assessment) -> str:
     """What does not fit, conflicts, and the method note."""
     k, parts = knowledge(), []
+    other = 1 - sum(a.posterior.of(each) for each in a.posterior.ranked)
+    if other >= _OTHER_TOLD:
+        parts.append(f"None of the named causes: {likelihood(other)}, {percent(other)}.")
     for each in a.misfits:
         parts.append(f"Does not fit the first cause: {each.finding.name} ({spoken(each.state)}).")
     for finding, _ in named_conflicts(a.posterior):

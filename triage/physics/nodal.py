@@ -189,17 +189,18 @@ def _eliminate(rows: list[list[complex]]) -> list[complex]:
     """Gaussian elimination with partial pivoting; `rows` is used up."""
     size = len(rows)
     for k in range(size):
-        best = max(range(k, size), key=lambda i: abs(rows[i][k]))
+        best = _largest(rows, k)
         pivot = rows[best]
         if abs(pivot[k]) < 1e-18:
             raise InvalidValue("admittances cancel and leave a node undefined")
         rows[best], rows[k] = rows[k], pivot
+        filled = [(j, pivot[j]) for j in range(k + 1, size + 1) if pivot[j]]
         for i in range(k + 1, size):
             row = rows[i]
             if row[k]:
                 factor = row[k] / pivot[k]
-                for j in range(k + 1, size + 1):
-                    row[j] -= factor * pivot[j]
+                for j, value in filled:
+                    row[j] -= factor * value
     values = [0j] * size
     for k in reversed(range(size)):
         row = rows[k]
@@ -208,3 +209,12 @@ def _eliminate(rows: list[list[complex]]) -> list[complex]:
             total -= row[j] * values[j]
         values[k] = total / row[k]
     return values
+
+
+def _largest(rows: list[list[complex]], k: int) -> int:
+    """Row with the largest number in a column; most of a column is empty, and cheap to pass."""
+    best, most = k, abs(rows[k][k])
+    for i in range(k + 1, len(rows)):
+        if rows[i][k] and abs(rows[i][k]) > most:
+            best, most = i, abs(rows[i][k])
+    return best
