@@ -30,7 +30,7 @@ def walked(state: State, typed: list[str], site: Site) -> State:
     for each in typed:
         step = next_step(state, site)
         assert step is not None, f"nothing is left to ask for {each}"
-        state = answer(state, step, each, site, NOW).state
+        state = answer(state, step, typed=each, site=site, present=NOW).state
     return state
 
 
@@ -40,7 +40,7 @@ def find(state: State, key: str, site: Site) -> Step:
 
 def again(state: State, key: str, typed: str, site: Site) -> Change:
     """One question answered once more, as after going back to it."""
-    return answer(state, find(state, key, site), typed, site, NOW)
+    return answer(state, find(state, key, site), typed=typed, site=site, present=NOW)
 
 
 def random_answer(rng: random.Random, state: State, step: Step, site: Site) -> str:
@@ -67,7 +67,9 @@ def random_walk(rng: random.Random, state: State, site: Site, length: int) -> St
         if rng.random() < 0.2:
             step = rng.choice([s for s in steps(state, site) if is_answered(s, state)] or [step])
         try:
-            state = answer(state, step, random_answer(rng, state, step, site), site, NOW).state
+            state = answer(
+                state, step, typed=random_answer(rng, state, step, site), site=site, present=NOW
+            ).state
         except InvalidValue as error:
             assert str(error)
     return state

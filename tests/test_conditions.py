@@ -35,6 +35,20 @@ def test_the_act_follows_what_the_person_was_doing(activity, kind, act):
     assert found(tree).touch.act == act
 
 
+@pytest.mark.parametrize(("told", "act", "surface"), [
+    ({}, "rise", None),
+    ({"seat": "antistatic"}, "rise", "antistatic"),
+    ({"garment": "cotton"}, "garment_off", "cotton"),
+    ({"garment": "cotton", "seat": "foam"}, "rise", "foam"),
+])  # fmt: skip
+def test_a_garment_alone_means_undressing_and_a_seat_rising(told, act, surface):
+    tree = touching({"id": "it", "kind": "furniture_fixed"}) | {
+        "event": {"activity": "rising_undressing"}, "surroundings": told,
+    }  # fmt: skip
+    touch = found(tree).touch
+    assert (touch.act, touch.surface) == (act, surface)
+
+
 def test_a_capacitance_that_was_measured_wins_over_the_size():
     sized = CART | {"length": "900 mm", "width": "50 cm", "clearance": "0.15 m"}
     by_size = found(touching(sized)).touch

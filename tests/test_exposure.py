@@ -174,3 +174,15 @@ def test_the_smallest_and_largest_object_still_give_probabilities(item):
     for cause in STATIC_CAUSES:
         felt = exposure_of(tree).causes[cause].static.felt
         assert all(0 <= p <= 1 for p in (felt.low, felt.value, felt.high))
+
+
+@pytest.mark.parametrize("told", [{"seat": "antistatic"}, {"garment": "cotton"}])
+def test_a_seat_or_garment_that_charges_less_weighs_less_and_never_more(told):
+    def rising(surroundings):
+        tree = walk() | {"surroundings": surroundings}
+        tree["event"] = {**tree.get("event", {}), "activity": "rising_undressing"}
+        return exposure_of(tree).causes["person_rising"]
+
+    usual = {"garment": "synthetic"} if "garment" in told else {}
+    assert rising(told).felt.value < rising(usual).felt.value
+    assert rising(told).factor < rising(usual).factor

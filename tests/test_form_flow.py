@@ -102,7 +102,9 @@ def test_a_first_answer_given_again_takes_back_what_it_had_set() -> None:
 
 
 def test_of_two_short_answers_that_disagree_the_more_adverse_one_counts() -> None:
-    change = answer(fresh(), next_step(fresh(), NO_SITE), "nobody burn", NO_SITE, NOW)
+    change = answer(
+        fresh(), next_step(fresh(), NO_SITE), typed="nobody burn", site=NO_SITE, present=NOW
+    )
     assert change.state.tree["persons"][0]["signs"] == ["burn"]
     assert change.dropped == ("none: a more adverse answer stands beside it",)
 

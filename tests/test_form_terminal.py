@@ -158,7 +158,7 @@ def filled(path: Path, typed: list[str], *, by: str | None = BY, site=None, talk
 def test_a_red_flag_is_said_at_once_and_again_at_the_end(tmp_path: Path, capsys) -> None:
     filled(tmp_path / "a.yaml", MAINS, site=load_site(SITE))
     seen = capsys.readouterr().out
-    flag = "RED FLAG: Isolation monitor in alarm."
+    flag = "Isolation monitor in alarm"
     assert seen.index(flag) < seen.index("What was changed since?")
     assert seen.rindex(flag) > seen.index("COMPLETE")
 
@@ -190,7 +190,7 @@ def test_the_same_person_going_on_leaves_no_trace(tmp_path: Path) -> None:
 
 
 CHECK = ["check", "visual inspection", "item1", "full length look", "u", "yes", "as found",
-         "unplugged", "pass", "whole and dry", "u", "clinical engineer", "now"]  # fmt: skip
+         "unplugged", "pass", "clinical engineer", "now"]  # fmt: skip
 
 
 def test_a_finished_record_takes_a_check_and_says_who_added_it(tmp_path: Path) -> None:
@@ -245,7 +245,7 @@ def test_a_doubtful_value_counts_only_when_it_is_given_again(tmp_path: Path, cap
     upto = MAINS[: MAINS.index("1.4 mA")]
     site = load_site(SITE)
     filled(tmp_path / "a.yaml", [*upto, "0.12 A", "1.2 mA"], site=site)
-    assert "was 120 µA meant?" in capsys.readouterr().out
+    assert "was 120 µA meant?" in " ".join(capsys.readouterr().out.split())
     assert load(tmp_path / "a.yaml").incident.supply.current_reading.text == "1.2 mA"
     filled(tmp_path / "b.yaml", [*upto, "0.12 A", "0.12 A"], site=site)
     assert load(tmp_path / "b.yaml").incident.supply.current_reading.text == "0.12 A"

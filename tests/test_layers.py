@@ -43,7 +43,8 @@ ROWS = [
     {"typeset"},
     {"render"},
     {"documents"},
-    {"form", "log_command", "sheet", "verify"},
+    {"command_input"},
+    {"form", "log_command", "paper_commands", "sheet", "verify"},
     {"cli"},
     {"__main__"},
 ]

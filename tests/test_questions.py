@@ -5,6 +5,7 @@ import copy
 import pytest
 
 from triage import questions
+from triage.check_table import check_kinds
 from triage.errors import BadTable
 from triage.questions import every_question, field_at, room_defaults, sections
 from triage.tables import table
@@ -88,3 +89,9 @@ def test_a_room_default_that_no_site_file_has_is_refused(spoiled) -> None:
     spoiled["room_defaults"]["wallpaper"] = "place.area"
     with pytest.raises(BadTable, match="wallpaper"):
         room_defaults()
+
+
+def test_a_value_is_asked_for_exactly_where_the_kind_of_check_has_one() -> None:
+    (value,) = [q for _, q in every_question() if q.path == "checks[].value"]
+    without = {kind.id for kind in check_kinds().values() if kind.quantity is None}
+    assert value.when[1].not_among == without

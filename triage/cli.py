@@ -7,21 +7,24 @@ from typing import TYPE_CHECKING, Annotated
 
 import typer
 
+from triage.command_input import (
+    BAD_INPUT,
+    Files,
+    SiteFile,
+    assessed,
+    complain,
+    record_from,
+    site_from,
+    status,
+)
 from triage.errors import TriageError
 from triage.log_command import log
+from triage.paper_commands import PAPERS
 from triage.visible import visible
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
-
     from triage.assessment import Assessment
-    from triage.documents.paper import Paper
     from triage.history import History
-    from triage.record import Record
-    from triage.site import Site
-
-BAD_INPUT, USAGE, SEVERE = 1, 2, 3
-"""Exit statuses beside 0: some input was bad; wrong use; done, and some disposition is severe."""
 
 app = typer.Typer(
     add_completion=False,
@@ -32,28 +35,18 @@ app = typer.Typer(
     "engineer and does not decide in the engineer's place.",
 )
 
-Files = Annotated[list[Path], typer.Argument(help="Incident records, YAML.", show_default=False)]
-SiteFile = Annotated[
-    Path | None, typer.Option("--site", help="The facility's own file.", show_default=False)
-]
-
-OneFile = Annotated[Path, typer.Argument(help="Incident record, YAML.", show_default=False)]
-PaperFile = Annotated[
-    Path, typer.Option("-o", "--out", help="PDF file to write.", show_default=False)
-]
-
 
 @app.command()
 def check(files: Files, site: SiteFile = None) -> None:
     """Validate records only: every fault at once, then questions."""
     from triage.record import clock_faults
 
-    zone, bad = _site(site).zone, 0
+    zone, bad = site_from(site).zone, 0
     for path in files:
-        record = _record(path)
+        record = record_from(path)
         faults = clock_faults(record, zone) if record else []
         for fault in faults:
-            _complain(TriageError(fault))
+            complain(TriageError(fault))
         if record is None or faults:
             bad += 1
             continue
@@ -75,9 +68,9 @@ def assess(
     ] = None,
 ) -> None:
     """Person, dispositions, defects, ranked causes, estimates, what is unknown, next checks."""
-    chosen = _site(site)
-    found = _assessed(files, chosen)
-    before = None if earlier is None else _assessed(_records_in(earlier), chosen)
+    chosen = site_from(site)
+    found = assessed(files, chosen)
+    before = None if earlier is None else assessed(_records_in(earlier), chosen)
     made = [(each, _history(each, before)) for each in found if each is not None]
     if json:
         from triage.documents.as_data import as_data, as_json
@@ -89,7 +82,7 @@ def assess(
 
         texts = [plain_text(each, why=why, earlier=past) for each, past in made]
         typer.echo("\n".join(texts), nl=False)
-    raise typer.Exit(_status([*found, *([None] if before and None in before else [])]))
+    raise typer.Exit(status([*found, *([None] if before and None in before else [])]))
 
 
 @app.command()
@@ -104,13 +97,13 @@ def report(
 
     targets = _targets(files, out)
     found = []
-    for target, each in zip(targets, _assessed(files, _site(site)), strict=True):
+    for target, each in zip(targets, assessed(files, site_from(site)), strict=True):
         found.append(each)
         if each is not None:
             for note in write_report(each, target, page_one_only=page_one):
                 typer.echo(visible(f"{target}: {note}"), err=True)
             typer.echo(visible(f"{target}"))
-    raise typer.Exit(_status(found))
+    raise typer.Exit(status(found))
 
 
 def _targets(files: list[Path], out: Path) -> list[Path]:
@@ -131,12 +124,11 @@ def blank(
 ) -> None:
     """Write an empty record with a new id and a comment at every field."""
     from triage.canonical import new_record_id
-    from triage.documents.field_guide import blank_record
     from triage.errors import CannotWrite
 
     try:
         with out.open("x", encoding="utf-8") as file:
-            file.write(blank_record(new_record_id()))
+            file.write(blankrecord_from(new_record_id()))
     except OSError as error:
         reason = error.strerror or "cannot be written"
         raise CannotWrite(f"{out}: {reason}; name a new file in a folder of yours") from None
@@ -178,7 +170,7 @@ def explain(
     from triage.documents.explain import explain as unfold
     from triage.documents.explain import names
 
-    for found in _assessed([file], _site(site)):
+    for found in assessed([file], site_from(site)):
         if found is None:
             raise typer.Exit(BAD_INPUT)
         typer.echo(visible("\n".join(unfold(found, name) if name else names(found))))
@@ -215,154 +207,13 @@ def record(
     from triage.form.open_form import Opening, open_form
 
     lines = from_file(answers) if answers else from_terminal()
-    found = open_form(file, Opening(_site(site), lines, by))
+    found = open_form(file, Opening(site_from(site), lines, by))
     raise typer.Exit(SEVERE if found else 0)
 
 
-@app.command()
-def card(out: PaperFile, site: SiteFile = None) -> None:
-    """Write the wall card: the first minute for people without this program."""
-    from triage.documents.card import card as made
-
-    _write_paper(made(_site(site)), out)
-
-
-@app.command()
-def slip(out: PaperFile, site: SiteFile = None) -> None:
-    """Write the half-page slip for a witness's own words, twice on a page."""
-    from triage.documents.slip import slip as made
-
-    _write_paper(made(_site(site)), out)
-
-
-@app.command()
-def sheet(
-    out: PaperFile,
-    site: SiteFile = None,
-    room: Annotated[
-        str | None, typer.Option(help="Room of the site file, to be confirmed on the sheet.")
-    ] = None,
-) -> None:
-    """Write the two-page sheet for pen or tablet, with the limits in force at the site."""
-    from triage.documents.sheet import sheet as made
-
-    _write_paper(made(_site(site), room), out)
-
-
-@app.command()
-def tag(file: OneFile, out: PaperFile, site: SiteFile = None) -> None:
-    """Write a tag for each item of a record, readable at arm's length."""
-    from triage.documents.tag import tag as made
-
-    _write_case_paper(made, file, out=out, site=site)
-
-
-@app.command()
-def workrequest(file: OneFile, out: PaperFile, site: SiteFile = None) -> None:
-    """Write the work request to facilities: what to record first, tests, return box."""
-    from triage.documents.work_request import work_request
-
-    _write_case_paper(work_request, file, out=out, site=site)
-
-
-@app.command()
-def careslip(file: OneFile, out: PaperFile, site: SiteFile = None) -> None:
-    """Write the page for occupational health; no cause is named on it."""
-    from triage.documents.care_slip import care_slip
-
-    _write_case_paper(care_slip, file, out=out, site=site)
-
-
-@app.command()
-def staffslip(file: OneFile, out: PaperFile, site: SiteFile = None) -> None:
-    """Write the page for the person who felt it; no cause is named on it."""
-    from triage.documents.staff_slip import staff_slip
-
-    _write_case_paper(staff_slip, file, out=out, site=site)
-
-
-@app.command()
-def brief(
-    files: Files,
-    out: PaperFile,
-    site: SiteFile = None,
-    at: Annotated[
-        str | None,
-        typer.Option("--at", help="Time due dates are held against; now if left out."),
-    ] = None,
-) -> None:
-    """Write the open cases for the next shift, worst first."""
-    from triage import clock
-    from triage.documents.brief import brief as made
-
-    chosen = _site(site)
-    found = _assessed(files, chosen)
-    unread = [str(path) for path, each in zip(files, found, strict=True) if each is None]
-    moment = clock.parse(at) if at else clock.now()
-    _write_paper(made([a for a in found if a], chosen, at=moment, unread=unread), out)
-    raise typer.Exit(_status(found))
-
-
-def _write_paper(paper: "Paper", out: Path) -> None:
-    from triage.documents.paper import write_paper
-
-    for note in write_paper(paper, out):
-        typer.echo(visible(f"{out}: {note}"), err=True)
-    typer.echo(visible(f"{out}"))
-
-
-def _write_case_paper(
-    made: "Callable[[Assessment], Paper]", file: Path, *, out: Path, site: Path | None
-) -> None:
-    found = _assessed([file], _site(site))
-    for each in found:
-        if each is not None:
-            _write_paper(made(each), out)
-    raise typer.Exit(_status(found))
-
-
 app.command()(log)
-
-
-def _site(path: Path | None) -> "Site":
-    from triage.site import load, no_site
-
-    if path is None:
-        return no_site()
-    from triage.site_check import site_faults
-
-    found = load(path)
-    faults = site_faults(found)
-    if faults:
-        from triage.errors import BadRecord
-
-        raise BadRecord([f"{path}: {fault}" for fault in faults])
-    return found
-
-
-def _record(path: Path) -> "Record | None":
-    """A record, or None after its faults were printed."""
-    from triage.record import load
-
-    try:
-        return load(path)
-    except TriageError as error:
-        _complain(error)
-        return None
-
-
-def _assessed(files: list[Path], site: "Site") -> "list[Assessment | None]":
-    from triage.assessment import assess as assess_record
-
-    found: list[Assessment | None] = []
-    for path in files:
-        record = _record(path)
-        try:
-            found.append(assess_record(record, site) if record else None)
-        except TriageError as error:
-            _complain(error, str(path))
-            found.append(None)
-    return found
+for each in PAPERS:
+    app.command()(each)
 
 
 def _records_in(folder: Path) -> list[Path]:
@@ -381,20 +232,6 @@ def _history(each: "Assessment", before: "list[Assessment | None] | None") -> "H
     return history(each, [other for other in before if other is not None])
 
 
-def _complain(error: TriageError, where: str = "") -> None:
-    for line in str(error).splitlines():
-        typer.echo(visible(f"triage: {where + ': ' if where else ''}{line}"), err=True)
-
-
-def _status(found: "list[Assessment | None]") -> int:
-    """1 if any input was bad, else 3 if any disposition is one of the two most severe."""
-    from triage.documents.summary import severe
-
-    if any(each is None for each in found):
-        return BAD_INPUT
-    return SEVERE if any(severe(each) for each in found if each) else 0
-
-
 def main() -> None:
     """Run the command line; a known error is one message and exit status 1."""
     for stream in (sys.stdout, sys.stderr):
@@ -408,5 +245,5 @@ def main() -> None:
     try:
         app()
     except TriageError as error:
-        _complain(error)
+        complain(error)
         raise SystemExit(BAD_INPUT) from None

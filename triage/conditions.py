@@ -27,6 +27,7 @@ class Touch:
 
     Args:
         act: quick act, a row of the table of acts.
+        surface: what was risen from or taken off, a row of seats or garments, if known.
         pushing: a cart was pushed and something else was touched.
         lying: somebody or something lying on what was touched was slid.
         posture: row of bodies where it does not follow from the shoes.
@@ -39,6 +40,7 @@ class Touch:
     """
 
     act: str = "rise"
+    surface: str | None = None
     pushing: bool = False
     lying: bool = False
     posture: str | None = None
@@ -120,8 +122,10 @@ def touch_of(incident: Incident, touched: tuple[Item, ...]) -> Touch:
     )
     farads, source = _capacitance(objects)
     patients = bool(incident.persons) and all(p.who == "patient" for p in incident.persons)
+    act, surface = _act(incident, lying)
     return Touch(
-        act=_act(activity, lying),
+        act=act,
+        surface=surface,
         pushing=activity == "pushing_cart" and bool(contacts) and not objects,
         lying=lying,
         posture="seated" if patients and activity not in ("walking", "pushing_cart") else None,
@@ -134,11 +138,13 @@ def touch_of(incident: Incident, touched: tuple[Item, ...]) -> Touch:
     )
 
 
-def _act(activity: str | None, lying: bool) -> str:
-    """The quick act; rising charges more than undressing and stands for both."""
-    if activity != "handling_plastic":
-        return "rise"
-    return "slide_patient" if lying else "wipe_plastic"
+def _act(incident: Incident, lying: bool) -> tuple[str, str | None]:
+    """The quick act and its surface; rising charges more and stands for both unless only a
+    garment is named."""
+    if incident.event.activity == "handling_plastic":
+        return ("slide_patient" if lying else "wipe_plastic"), None
+    seat, garment = incident.surroundings.seat, incident.surroundings.garment
+    return ("garment_off", garment) if garment and not seat else ("rise", seat)
 
 
 def _capacitance(objects: list[Item]) -> tuple[float | None, str]:

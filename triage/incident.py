@@ -222,6 +222,8 @@ class Surroundings(Part):
     last_cleaned: Moment | None = time("Last cleaning of floor or wheels.")
     cleaning_product: str | None = text("With what.", 120)
     footwear: str | None = word("Footwear.", w.FOOTWEAR)
+    garment: str | None = word("What was taken off, if anything was.", w.GARMENT)
+    seat: str | None = word("What was risen from, if anybody rose.", w.SEAT)
     garments: str | None = text("Garments, in words.", 200)
     furniture: str | None = text("Chairs, sheets and films involved.", 200)
     air_handling: str | None = word("Air handling at that time.", w.AIR_HANDLING)

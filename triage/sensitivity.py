@@ -2,7 +2,6 @@
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 from triage.diagnosis import Posterior
 from triage.frozen import frozen
@@ -14,7 +13,7 @@ _Z90 = 1.6448536269514722
 STABLE, LEANING = 0.9, 0.6
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Range:
     """A probability with the range its judged numbers leave."""
 

@@ -7,6 +7,7 @@ from triage.bounds import Probability, Reading
 from triage.conditions import Conditions, Touch
 from triage.errors import InvalidValue
 from triage.estimate import Estimate, product
+from triage.frozen import frozen
 from triage.materials import load, row_of
 from triage.physics.charging import Charged, in_series, leaking, moving, quick_act
 from triage.physics.discharge import in_series as shared_capacitance
@@ -24,7 +25,7 @@ _EARTHING_SHOES = ("esd", "antistatic")
 _EARTHING_WHEELS = ("conductive", "antistatic")
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Measured:
     """Static readings that replace assumptions; None where there is none.
 
@@ -86,7 +87,7 @@ class StaticStory:
         return self.cause == "person_rising" and self.touch.act == "wipe_plastic"
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class StaticExposure:
     """One static cause under one set of conditions.
 
@@ -248,7 +249,7 @@ def _acted(told: StaticStory) -> Charged:
         return _surface(m.act_voltage(act, told.humidity), told)
     named = f"{act}_earthing" if _earthing(told) and f"{act}_earthing" in m.acts else act
     charged = quick_act(
-        m.act_charge(named, told.humidity),
+        m.act_charge(named, told.humidity, surface=told.touch.surface),
         _own(told),
         doubt=m.doubt(),
         corona_limit=m.walking["corona_limit"].median,
@@ -318,7 +319,7 @@ def _opposite(told: StaticStory) -> Estimate | None:
     """
     if told.of_object:
         return None if told.touch.pushing or told.touch.earthed else _person(told)
-    if told.cause == "person_rising" and told.touch.act != "rise":
+    if told.cause == "person_rising" and told.touch.act not in ("rise", "garment_off"):
         takes = told.touch.act == "slide_patient" and told.touch.lying and not told.touch.earthed
         return load().capacitance("standing") if takes else None
     return _object(told) if _object_floats(told) else None

@@ -2,7 +2,6 @@
 
 import dataclasses
 from collections.abc import Mapping
-from dataclasses import dataclass
 
 from triage.diagnosis import diagnose
 from triage.evidence import Evidence, gather
@@ -12,7 +11,7 @@ from triage.incident import Incident
 from triage.knowledge import knowledge
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Believed:
     """The ranking if one statement alone is believed.
 

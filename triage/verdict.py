@@ -2,14 +2,13 @@
 
 import math
 from collections.abc import Iterator
-from dataclasses import dataclass
 
 from triage.errors import InvalidValue
 from triage.frozen import frozen
 from triage.limits import Edition, Limit
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Comparison:
     """A reading held against one limit.
 

@@ -180,6 +180,16 @@ ACTIVITY: WordList = {
     "wet_cleaning": (None, "cleaning with liquid, spill"),
     "still": (None, "standing or sitting still, or something else"),
 }
+GARMENT: WordList = {
+    "synthetic": (None, "polyester or other synthetic"),
+    "cotton": (None, "cotton or linen"),
+    "antistatic": (None, "antistatic workwear"),
+}
+SEAT: WordList = {
+    "foam": (None, "padded or vinyl-leather seat"),
+    "plastic": (None, "hard plastic seat"),
+    "antistatic": (None, "antistatic or conductive seat cover"),
+}
 SOURCE: WordList = {
     "said": (None, "somebody said so"),
     "seen": (None, "seen by the recorder"),

@@ -1,7 +1,6 @@
 """The care slip for occupational health: what may have acted on the person, no cause named."""
 
 from collections.abc import Iterator
-from typing import Any
 
 from triage import words as w
 from triage.assessment import Assessment

@@ -132,7 +132,10 @@ def _place(a: Assessment) -> Iterator[str]:
     shoes = meaning(w.FOOTWEAR, found.footwear)
     yield f"Floor: {meaning(w.FLOOR, found.floor)}; footwear: {shoes}."
     air = meaning(w.AIR_HANDLING, s.air_handling) if s.air_handling else None
-    for label, value in (("Air handling", air), ("Garments", s.garments),
+    seat = meaning(w.SEAT, s.seat) if s.seat else None
+    garment = meaning(w.GARMENT, s.garment) if s.garment else None
+    for label, value in (("Air handling", air), ("Risen from", seat), ("Taken off", garment),
+                         ("Garments", s.garments),
                          ("Furniture and films", s.furniture),
                          ("Cleaning product", s.cleaning_product),
                          ("Sensor", s.sensor)):  # fmt: skip

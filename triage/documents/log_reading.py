@@ -11,14 +11,14 @@ def log_lines(reading: LogReading) -> Iterator[str]:
     """Everything a log says about the time of an event."""
     log = reading.log
     yield f"{log.sheet.name}: {len(log.moments)} rows, read as"
-    yield from (f"  {each}" for each in log.read_as)
+    yield from (f"  {part}" for each in log.read_as for part in each.split("; "))
     yield _clock(reading)
     yield ""
     if log.options.kind != EVENTS:
         yield from _value(reading)
     else:
-        yield "The rows around the event are in the excerpt below. A missing row of an alarm does not"
-        yield "mean that there was none: who knows the system can say whether this log would hold it."
+        yield "The rows around the event are in the excerpt below. A missing row of an"
+        yield "alarm does not mean that there was none; not every log holds every alarm."
     for each in (*reading.flags, *log.flags):
         yield f"Look: {each}."
     yield ""
@@ -31,8 +31,8 @@ def _clock(reading: LogReading) -> str:
     ahead = reading.log.options.ahead
     if ahead:
         way = "ahead of" if ahead > 0 else "behind"
-        return f"  the log's clock {abs(ahead):.0f} s {way} wall time, as said: times are put right"
-    return "  no clock error said; compare the log's clock with wall time and say --clock-error"
+        return f"  the log's clock {abs(ahead):.0f} s {way} wall time, as said; times put right"
+    return "  no clock error said: compare its clock with wall time, say --clock-error"
 
 
 def _value(reading: LogReading) -> Iterator[str]:
@@ -43,29 +43,27 @@ def _value(reading: LogReading) -> Iterator[str]:
         shown = as_typed(reading.value, kind, reading.bound)
         worst = {"monitor-current": "highest", "monitor-resistance": "lowest"}.get(kind)
         how = f"{worst} of the rows around it" if worst else "between its neighbours"
-        yield f"At {reading.moment.text}: {shown}, {how}, from '{reading.log.sensor}'."
+        yield f"At {reading.moment.text}: {shown}, {how},"
+        yield f"  from '{reading.log.sensor}'."
     if reading.value is not None and reading.low is not None and reading.high is not None:
         yield f"Rows around it: {as_typed(reading.low, kind)} to {as_typed(reading.high, kind)}."
     if reading.doubt is not None:
-        yield f"Doubt (one standard deviation): {_difference(reading.doubt, kind)}{_of(reading)}."
+        own = "with" if reading.sensor_doubt else "without"
+        yield f"Doubt (one standard deviation): {_difference(reading.doubt, kind)},"
+        yield f"  {own} the doubt of the sensor itself, which only a site file can state."
     if reading.before:
-        yield _before(reading.before, kind)
+        yield from _before(reading.before, kind)
 
 
-def _of(reading: LogReading) -> str:
-    known = "with the sensor's own from the site file" if reading.sensor_doubt else (
-        "from the rows alone; the site file states none for the sensor itself")  # fmt: skip
-    return f", {known}"
-
-
-def _before(trend: Trend, kind: str) -> str:
+def _before(trend: Trend, kind: str) -> Iterator[str]:
     rows = f"{trend.rows} row{'s' if trend.rows > 1 else ''}"
-    text = (f"Hour before ({rows}): {as_typed(trend.low, kind)} to {as_typed(trend.high, kind)}, "
-            f"mean {as_typed(trend.mean, kind)}")  # fmt: skip
+    low, high, mean = (as_typed(each, kind) for each in (trend.low, trend.high, trend.mean))
+    yield f"Hour before ({rows}): {low} to {high}, mean {mean};"
     if trend.slope is None:
-        return f"{text}; too few rows for a trend."
-    way = "rising" if trend.slope > 0 else "falling"
-    return f"{text}; {way} by {_difference(abs(trend.slope), kind)} in an hour."
+        yield "  too few rows for a trend."
+    else:
+        way = "rising" if trend.slope > 0 else "falling"
+        yield f"  {way} by {_difference(abs(trend.slope), kind)} in an hour."
 
 
 def _difference(size: float, kind: str) -> str:
@@ -80,10 +78,10 @@ def _to_answer(reading: LogReading) -> Iterator[str]:
     kind = reading.log.options.kind
     yield ""
     if kind in ("humidity", "temperature"):
-        yield "Add surroundings.humidity_where: at_place, same_room, same_air or elsewhere."
+        yield "Add surroundings.humidity_where: at_place, same_room, same_air, elsewhere."
     elif kind == EVENTS:
-        yield "If a row is the alarm or trip of that moment: supply.alarm or supply.trip yes,"
-        yield "and supply.alarm_source or supply.trip_source log. Never 'no' from a missing row."
+        yield "If a row is the alarm or trip of that moment: supply.alarm or supply.trip"
+        yield "yes, with its source log. Never 'no' from a missing row."
     else:
-        yield "Add supply.changed_since: was anything plugged or unplugged before this reading?"
-        yield "The value is the least favourable row, since a value between two rows hides a peak."
+        yield "Add supply.changed_since: was anything plugged or unplugged before it?"
+        yield "The least favourable row counts: a value between two rows hides a peak."

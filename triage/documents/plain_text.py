@@ -2,22 +2,24 @@
 
 from collections.abc import Iterator
 from textwrap import wrap
+from typing import TYPE_CHECKING
 
 from triage.assessment import Assessment
-from triage.documents.earlier_reports import earlier_lines
 from triage.documents.look_back import look_back_lines
 from triage.documents.sources import source_lines
 from triage.documents.summary import Summary, summarise
 from triage.documents.witnesses import witness_lines
 from triage.documents.wording import LEVEL_NAME, spoken
-from triage.history import History
 from triage.knowledge import knowledge
 from triage.visible import visible
+
+if TYPE_CHECKING:
+    from triage.history import History
 
 WIDTH = 78
 
 
-def plain_text(a: Assessment, *, why: bool = False, earlier: History | None = None) -> str:
+def plain_text(a: Assessment, *, why: bool = False, earlier: "History | None" = None) -> str:
     """The whole assessment in the order it is read.
 
     Args:
@@ -35,10 +37,12 @@ def plain_text(a: Assessment, *, why: bool = False, earlier: History | None = No
 
 
 def _sections(
-    a: Assessment, s: Summary, earlier: History | None
+    a: Assessment, s: Summary, earlier: "History | None"
 ) -> Iterator[tuple[str, list[str]]]:
     yield "PERSON", _items((*s.person, *s.reviews))
     if earlier is not None:
+        from triage.documents.earlier_reports import earlier_lines
+
         yield "EARLIER REPORTS", _items(earlier_lines(earlier))
     yield "DISPOSITION", _dispositions(s)
     yield "DEFECTS FOUND", _items(s.defects)

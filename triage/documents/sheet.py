@@ -13,8 +13,8 @@ from triage.documents.wording import spoken
 from triage.errors import InvalidValue
 from triage.fields import WordList
 from triage.paper_texts import PaperTexts
-from triage.questions import Question, every_question, room_defaults
 from triage.quantity import Quantity
+from triage.questions import Question, every_question, room_defaults
 from triage.site import Room, Site
 
 _HEAD = ("case", "when", "recorder", "room")

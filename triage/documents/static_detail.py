@@ -43,6 +43,7 @@ SOURCE = {
     "coupling_capacitance": "capacitance between person and plastic",
     "contact_voltage": "voltage of a lifted foot",
     "quick_act_voltage": "voltage of the act",
+    "surface_material": "seat or garment",
     "measured_voltage": "measured voltage",
     "humidity": "humidity",
     "model_doubt": "doubt about the model",

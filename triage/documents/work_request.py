@@ -44,29 +44,30 @@ def work_request(a: Assessment) -> Paper:
     sections = [
         ("where", [_list(_where(a))]),
         ("observed", [_list(_observed(a))]),
-        ("readings", [_list([*_monitor(a), *_readings(a)]
-                            or [t("workrequest.no_reading")])]),
-        ("state", [_write([[t("workrequest.depends"), depends], [t("workrequest.isolated"), ""]])]),
+        ("state", [_write([[t("workrequest.depends"), depends, t("workrequest.branch"), ""],
+                           [t("workrequest.isolated"), "", t("workrequest.area"), ""]])]),
         ("before", [{"kind": "steps", "lines": t.several("workrequest.record")}]),
         ("tests", _tests(a, t)),
-        ("return", [_write(_return_box(a, t))]),
+        ("return", [_write(_return_box(t))]),
+        ("readings", [_list([*_monitor(a), *_readings(a)]
+                            or [t("workrequest.no_reading")])]),
     ]  # fmt: skip
+    back = contact_lines(t, a.site, ("biomedical",))[0]
+    titles = {"return": f"{t('workrequest.return')}: {back}"}
     matter = {
         "form": "dense",
         "heading": f"{t('workrequest.title')} {a.record.case}",
         "lead": lead,
-        "sections": [{"title": t(f"workrequest.{name}"), "blocks": blocks}
+        "sections": [{"title": titles.get(name) or t(f"workrequest.{name}"), "blocks": blocks}
                      for name, blocks in sections],
     }  # fmt: skip
     return case_paper("paper.html", t, a=a, title=t("workrequest.title"), matter=matter)
 
 
-def _return_box(a: Assessment, t: PaperTexts) -> list[list[str]]:
-    """Blanks two by two, and whom the page goes back to."""
+def _return_box(t: PaperTexts) -> list[list[str]]:
+    """Blanks two by two."""
     blanks = [[each, ""] for each in t.several("workrequest.returned")]
-    back = [t("workrequest.to"), contact_lines(t, a.site, ("biomedical",))[0]]
-    pairs = [*blanks, *([["", ""]] if len(blanks) % 2 == 0 else []), back]
-    return [first + second for first, second in zip(pairs[::2], pairs[1::2], strict=True)]
+    return [first + second for first, second in zip(blanks[::2], blanks[1::2], strict=True)]
 
 
 def _list(lines: Any) -> Block:

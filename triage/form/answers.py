@@ -86,13 +86,13 @@ def pick_several(typed: str, among: Sequence[tuple[str, str]]) -> list[tuple[str
 
 
 def read(
-    path: str, typed: str, among: Sequence[tuple[str, str]], clock_: Moment, zone: str
+    path: str, typed: str, *, among: Sequence[tuple[str, str]], present: Moment, zone: str
 ) -> Reading:
     """An answer to the field at a path such as "items[0].power".
 
     Args:
         among: choices, where the answer is chosen.
-        clock_: the present, for "now" and a bare time of day.
+        present: the present, for "now" and a bare time of day.
         zone: zone of the site.
 
     Raises:
@@ -106,7 +106,7 @@ def read(
     if among:
         word, meaning = pick(typed, among)
         return Reading(word, meaning)
-    text = _time(typed, clock_, zone) if row.kind == "time" else typed.strip()
+    text = _time(typed, present, zone) if row.kind == "time" else typed.strip()
     found, questions = _by_the_table(holder, name, text)
     return Reading(text, _echo(row, found, text), questions)
 

@@ -38,7 +38,7 @@ class Change:
     dropped: tuple[str, ...] = ()
 
 
-def answer(state: State, step: Step, typed: str, site: Site, present: Moment) -> Change:
+def answer(state: State, step: Step, *, typed: str, site: Site, present: Moment) -> Change:
     """Answer one step.
 
     Args:
@@ -50,8 +50,8 @@ def answer(state: State, step: Step, typed: str, site: Site, present: Moment) ->
         InvalidValue: it cannot be the answer; the text says what would do.
     """
     before = {each.key: each for each in steps(state, site)}
-    found = _put(state.copy(), step, typed, site, present)
-    said = _prune(before, state, found.state, site)
+    found = _put(state.copy(), step, typed=typed, site=site, present=present)
+    said = _prune(before, state, after=found.state, site=site)
     tree = in_order(found.state.tree)
     try:
         from_plain(Plain("form", tree))
@@ -61,28 +61,28 @@ def answer(state: State, step: Step, typed: str, site: Site, present: Moment) ->
     return Change(after, found.echo, found.doubt, (*found.dropped, *said))
 
 
-def _put(state: State, step: Step, typed: str, site: Site, present: Moment) -> Change:
+def _put(state: State, step: Step, *, typed: str, site: Site, present: Moment) -> Change:
     if step.kind == "another":
-        return _another(state, step, typed)
+        return _another(state, step, typed=typed)
     if step.kind == "defaults":
-        return _defaults(state, step, typed, site)
-    assert step.question is not None, "every other step has a question"
-    if step.kind == "options":
+        return _defaults(state, step, typed=typed, site=site)
+    if step.kind == "options" and step.question:
         echo, said = choose(state, step.question, typed)
         return Change(state, echo, dropped=said)
-    return _field(state, step, step.question, (typed, site, present))
+    return _field(state, step, typed=typed, site=site, present=present)
 
 
-def _field(state: State, step: Step, question: Question, given: tuple[str, Site, Moment]) -> Change:
-    typed, site, present = given
+def _field(state: State, step: Step, *, typed: str, site: Site, present: Moment) -> Change:
+    question = step.question
+    assert question is not None, "a field is asked for by a question"
     among = choices(step, state, site)
     dropped: tuple[str, ...] = ()
     if question.makes and not says_unknown(typed):
-        found, dropped = _made(state, step, question, typed)
+        found, dropped = _made(state, step, question=question, typed=typed)
     elif question.path == "checks[].value":
         found = read_value(typed, get(state.tree, f"checks[{step.number}].kind"))
     else:
-        found = read(step.key, typed, among, present, site.zone)
+        found = read(step.key, typed, among=among, present=present, zone=site.zone)
     put(state.tree, step.key, found.value)
     later = state.marks.get("later")
     if later is not None:
@@ -91,7 +91,7 @@ def _field(state: State, step: Step, question: Question, given: tuple[str, Site,
 
 
 def _made(
-    state: State, step: Step, question: Question, typed: str
+    state: State, step: Step, *, question: Question, typed: str
 ) -> tuple[Reading, tuple[str, ...]]:
     """An outlet or cord by its id, or a new item with the words typed as its name."""
     known = {each["id"] for each in state.tree["items"] if each.get("kind") == question.makes}
@@ -118,7 +118,7 @@ def _drop_made(state: State, name: str) -> tuple[str, ...]:
     return (f"{name}, which nothing else names",)
 
 
-def _another(state: State, step: Step, typed: str) -> Change:
+def _another(state: State, step: Step, *, typed: str) -> Change:
     part = step.section.part
     if says_unknown(typed):
         typed = "no"
@@ -139,7 +139,7 @@ def _another(state: State, step: Step, typed: str) -> Change:
     return Change(state, "no", dropped=tuple(dropped))
 
 
-def _defaults(state: State, step: Step, typed: str, site: Site) -> Change:
+def _defaults(state: State, step: Step, *, typed: str, site: Site) -> Change:
     """Values of the room, confirmed as a whole; otherwise each is asked for."""
     word = NOT_KNOWN if says_unknown(typed) else pick(typed, YES_NO)[0]
     if state.marks.get(step.key) == "yes":
@@ -162,12 +162,12 @@ def confirmed(state: State, site: Site) -> list[str]:
     return [path for path, text in brought.items() if get(state.tree, path) == text]
 
 
-def _prune(before: dict[str, Step], earlier: State, state: State, site: Site) -> list[str]:
+def _prune(before: dict[str, Step], earlier: State, *, after: State, site: Site) -> list[str]:
     """Drop the answers to questions that this answer put out of reach, and say so."""
     dropped = []
-    after = {each.key for each in steps(state, site)}
+    state, still = after, {each.key for each in steps(after, site)}
     for key, step in before.items():
-        if key in after:
+        if key in still:
             continue
         if step.kind == "field" and (found := get(state.tree, key)) is not None:
             put(state.tree, key, None)

@@ -58,8 +58,9 @@ def save(path: Path, state: State, *, complete: bool, head: str = "") -> None:
         CannotWrite: the folder or the disk does not allow it.
     """
     mark = "" if complete else f"{_MARK}{json.dumps(state.marks, sort_keys=True)}\n"
-    part = path.with_name(f".{path.name}.{os.getpid()}.part")
+    part = path.with_name(f".{path.name}.part")
     try:
+        part.unlink(missing_ok=True)  # left by a form that was killed
         _write(part, (mark + head + written(state.tree)).encode())
         if path.exists():
             _same_owner(path, part)
@@ -167,7 +168,7 @@ def _locked(lock: Path, path: Path) -> int:
             ) from None
         try:
             fcntl.flock(opened, fcntl.LOCK_EX | fcntl.LOCK_NB)
-            if lock.exists() and os.fstat(opened).st_ino == lock.stat().st_ino:
+            if _is_at(opened, lock):
                 if os.fstat(opened).st_uid == os.geteuid():
                     os.fchmod(opened, _GROUP)
                 return opened
@@ -178,3 +179,11 @@ def _locked(lock: Path, path: Path) -> int:
             raise CannotWrite(
                 f"{path}: open in the form of another ({who}); that form is left with q, then go on"
             ) from None
+
+
+def _is_at(opened: int, lock: Path) -> bool:
+    """Whether an open file is still the one of that name."""
+    try:
+        return os.fstat(opened).st_ino == lock.stat().st_ino
+    except FileNotFoundError:
+        return False

@@ -24,15 +24,16 @@ def assess_state(state: State, site: Site) -> Assessment:
     return assess(from_plain(Plain("form", state.tree)), site)
 
 
-def provisional(a: Assessment) -> list[str]:
+def provisional(a: Assessment, most: int = MOST_WORDS) -> list[str]:
     """What to do now: the person, the condition, what happens to each thing, the first check.
 
     Args:
         a: the assessment of a draft.
+        most: words; beyond them whole lines are left out, never the person, the condition or the
+            headline.
 
     Returns:
-        Lines in the order of acting; whole lines are left out, least needed first, beyond
-        `MOST_WORDS`, never the person, the condition or the headline.
+        Lines in the order of acting.
     """
     person, *care = person_lines(a)
     lead = headline(a) if len(a.items) > 1 else f"{LEVEL_NAME[a.headline]}."
@@ -41,7 +42,7 @@ def provisional(a: Assessment) -> list[str]:
     further += _orders(a)
     further.append(_NO_TOUCH)
     further += [f"First check: {check_line(each, a)}." for each in a.next_checks[:1]]
-    left = MOST_WORDS - sum(len(each.split()) for each in needed)
+    left = most - sum(len(each.split()) for each in needed)
     kept = []
     for line in further:
         if len(line.split()) <= left:

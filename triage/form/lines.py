@@ -2,6 +2,7 @@
 
 import sys
 from collections.abc import Iterator
+from io import TextIOWrapper
 from pathlib import Path
 from textwrap import wrap
 
@@ -38,7 +39,9 @@ class Lines:
 
 
 def from_terminal() -> Lines:
-    """Answers typed, or piped in."""
+    """Answers typed, or piped in; bytes that are no text are refused where they stand."""
+    if isinstance(sys.stdin, TextIOWrapper):
+        sys.stdin.reconfigure(errors="surrogateescape")
     return Lines(iter(sys.stdin.readline, ""), sys.stdin.isatty())
 
 
@@ -60,5 +63,8 @@ def from_file(path: Path) -> Lines:
 
 def say(text: str = "", indent: str = "") -> None:
     """Print one paragraph, wrapped for 80 columns."""
-    for line in wrap(visible(text), WIDTH, initial_indent=indent, subsequent_indent=indent) or [""]:
-        print(line)
+    lines = wrap(
+        visible(text), WIDTH, initial_indent=indent, subsequent_indent=indent,
+        break_long_words=False, break_on_hyphens=False,
+    )  # fmt: skip
+    print("\n".join(lines))

@@ -6,12 +6,10 @@ from pathlib import Path
 from triage import clock
 from triage.canonical import case_number, new_record_id
 from triage.clock import Moment
-from triage.documents.summary import severe
 from triage.errors import CannotWrite
 from triage.form import additions, draft
 from triage.form.change import confirmed
 from triage.form.entries import add
-from triage.form.first_minute import assess_state
 from triage.form.lines import Lines, say
 from triage.form.state import PREFIX, State, begin
 from triage.form.terminal import CONTROLS, Form, Session
@@ -78,7 +76,15 @@ def _fill(path: Path, fresh: str, opening: Opening) -> bool:
     else:
         draft.save(path, state, complete=False, head=head)
         state = _through(session, opening.lines, state)
-    return severe(assess_state(state, opening.site))
+    return _severe(state, opening.site)
+
+
+def _severe(state: State, site: Site) -> bool:
+    # Imported here: the first question must not wait for the assessment.
+    from triage.documents.summary import severe
+    from triage.form.first_minute import assess_state
+
+    return severe(assess_state(state, site))
 
 
 def _gone_on_with(state: State, opening: Opening) -> State:

@@ -3,6 +3,7 @@
 from collections.abc import Iterator
 from textwrap import wrap
 
+from triage.check_table import check_kinds
 from triage.clock import EXAMPLE as TIMES
 from triage.form.choices import asked, called, choices
 from triage.form.flow import Step, is_answered, progress, steps
@@ -13,11 +14,14 @@ from triage.questions import Question
 from triage.site import Site
 from triage.visible import visible
 
+_ONE_LOOK = 18
+"""Choices beyond which a question leaves a screen of 24 rows; it is put once more below them."""
+
 
 def question_lines(step: Step, state: State, site: Site) -> Iterator[str]:
     """Progress and question, then the choices or how the answer is typed."""
     about = _about(step, state)
-    lead = f"{_count(step, state, site)} {about}{asked(step, state, site)}{_how(step)}"
+    lead = f"{_count(step, state, site)} {about}{asked(step, state, site)}{_how(step, state)}"
     yield ""
     yield from wrap(visible(lead), WIDTH)
     if is_answered(step, state):
@@ -34,6 +38,8 @@ def question_lines(step: Step, state: State, site: Site) -> Iterator[str]:
         yield from wrap(
             visible(text), WIDTH, initial_indent=f"{number:4} ", subsequent_indent="     "
         )
+    if len(among) > _ONE_LOOK:
+        yield visible(step.question.ask)
 
 
 def _count(step: Step, state: State, site: Site) -> str:
@@ -75,7 +81,7 @@ def _in_a_row(words: list[str]) -> list[str]:
     return [each.replace("\u00a0", " ") for each in lines]
 
 
-def _how(step: Step) -> str:
+def _how(step: Step, state: State) -> str:
     """How the answer is typed, where that is not seen from the choices."""
     question = step.question
     if question is None:
@@ -83,6 +89,9 @@ def _how(step: Step) -> str:
     if question.many or question.field.kind == "words":
         return " (several)"
     example = _example(question)
+    if question.path == "checks[].value":
+        kind = check_kinds().get(str(get(state.tree, f"checks[{step.number}].kind")))
+        example = EXAMPLE[kind.quantity] if kind and kind.quantity else ""
     return f" (such as: {example})" if example else ""
 
 

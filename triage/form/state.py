@@ -138,8 +138,10 @@ def _ordered(record_class: type, tree: Tree) -> Tree:
 
 
 def _ordered_value(row: Field, value: Any) -> Any:
-    if row.of is None or not isinstance(value, dict | list):
+    if row.of is None:
         return value
+    if not isinstance(value, dict | list):
+        return None  # a group left empty in a record written by hand
     if isinstance(value, dict):
         return _ordered(row.of, value) or None
     return [_ordered(row.of, each) for each in value] or None

@@ -1,24 +1,29 @@
-"""The form at a terminal: ask, read, save, say; one question at a time, nothing redrawn."""
+"""The form at a terminal: ask, read, save, say; one question at a time, nothing redrawn.
+
+The assessment is imported at the first answer only: the first question must stand at once.
+"""
 
 from collections.abc import Callable
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from triage.clock import Moment
-from triage.documents.plain_text import plain_text
 from triage.errors import InvalidValue
 from triage.form.change import Change, answer
 from triage.form.choices import asked
 from triage.form.draft import save
-from triage.form.first_minute import assess_state, flag_line, new_flags, provisional
 from triage.form.flow import Step, before, first_minute_is_over, next_step, progress
 from triage.form.lines import Lines, say
 from triage.form.prompt import help_lines, question_lines
 from triage.form.state import State, chosen_by
 from triage.frozen import frozen
-from triage.red_flags import Flag
 from triage.site import Site
 
-CONTROLS = "? help   < back   u unknown   ! what to do   !! in full   q leave, keeping all"
+if TYPE_CHECKING:
+    from triage.assessment import Assessment
+    from triage.red_flags import Flag
+
+CONTROLS = "? help   < back   u unknown   ! what to do   !! in full   q leave"
 
 
 @frozen
@@ -45,7 +50,8 @@ class Form:
         """Start or go on at a state that is on disk already."""
         self.session, self.lines, self.state = session, lines, state
         self.at: Step | None = None
-        self.flags: tuple[Flag, ...] = ()
+        answered = state.marks.keys() - {"by"}
+        self.flags: tuple[Flag, ...] = self._assessed().flags if answered else ()
         self.told = first_minute_is_over(state, session.site)
         self.doubted = ""
 
@@ -59,7 +65,6 @@ class Form:
             InvalidValue: an answer out of a pipe or a file cannot be taken.
         """
         title = ""
-        self.flags = assess_state(self.state, self.session.site).flags
         while (step := self.at or next_step(self.state, self.session.site)) is not None:
             if step.section.title != title:
                 title = step.section.title
@@ -83,7 +88,9 @@ class Form:
         elif typed == "!":
             self.say_what_to_do()
         elif typed == "!!":
-            print(plain_text(assess_state(self.state, self.session.site)))
+            from triage.documents.plain_text import plain_text
+
+            print(plain_text(self._assessed()))
         elif not typed:
             say("Type an answer, u if it is not known, ? for help.", "  ")
         else:
@@ -91,7 +98,9 @@ class Form:
 
     def _answer(self, step: Step, typed: str) -> None:
         try:
-            change = answer(self.state, step, typed, self.session.site, self.session.clock())
+            change = answer(
+                self.state, step, typed=typed, site=self.session.site, present=self.session.clock()
+            )
         except InvalidValue as error:
             if not self.lines.talks:
                 raise InvalidValue(f"'{typed[:60]}' to: {self._asked(step)} {error}") from None
@@ -109,12 +118,14 @@ class Form:
 
     def _keep(self, change: Change, step: Step) -> None:
         """Save first, then say what follows from it."""
+        from triage.form.first_minute import flag_line, new_flags
+
         self.state, self.at = chosen_by(change.state, step.key, self.session.by), None
         save(self.session.path, self.state, complete=False, head=self.session.head)
         say(f"= {change.echo}", "  ")
         for each in change.dropped:
             say(f"No longer applies, dropped: {each}", "  ")
-        flags = assess_state(self.state, self.session.site).flags
+        flags = self._assessed().flags
         if raised := new_flags(self.flags, flags):
             say(flag_line(raised), "  ")
         self.flags = flags
@@ -122,16 +133,27 @@ class Form:
             self.told = True
             self.say_what_to_do()
 
+    def _assessed(self) -> "Assessment":
+        from triage.form.first_minute import assess_state
+
+        return assess_state(self.state, self.session.site)
+
     def say_what_to_do(self) -> None:
         """The provisional disposition in words one can act on."""
+        from triage.form.first_minute import MOST_WORDS, provisional
+
         say()
         done, total = progress(self.state, self.session.site)
-        open_ = f" (provisional, {total - done} questions open)" if done < total else ""
-        say(f"WHAT TO DO NOW{open_}")
-        for line in provisional(assess_state(self.state, self.session.site)):
+        say(f"WHAT TO DO NOW{' (provisional)' if done < total else ''}")
+        for line in provisional(self._assessed(), MOST_WORDS if done < total else 10 * MOST_WORDS):
             say(line, "  ")
 
     def say_flags(self) -> None:
         """Every red flag that stands, once more at the end."""
-        if standing := new_flags((), self.flags):
-            say(flag_line(standing), "  ")
+        from triage.form.first_minute import new_flags
+
+        standing = new_flags((), self.flags)
+        say()
+        say(f"RED FLAGS THAT STAND: {len(standing) or 'none'}")
+        for each in standing:
+            say(f"- {each.flag.name}: {each.missing}", "  ")

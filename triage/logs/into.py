@@ -4,11 +4,11 @@ import json
 import re
 from typing import Any
 
-from triage.errors import CannotWrite
+from triage.errors import BadRecord, CannotWrite
 from triage.fields import is_unknown
 from triage.logs.reading import LogReading
 from triage.quantity import worded
-from triage.strict_yaml import Plain, parse
+from triage.strict_yaml import parse
 
 Values = dict[str, dict[str, str]]
 """Section of a record to field to text."""
@@ -65,8 +65,9 @@ def with_values(text: str, name: str, values: Values) -> str:
         CannotWrite: a field already holds something else, or the file has a form in which the
             place of the new lines cannot be found.
     """
-    plain = parse(text, name)
-    tree = plain.tree if isinstance(plain.tree, dict) else {}
+    tree = parse(text, name).tree
+    if not isinstance(tree, dict):
+        raise CannotWrite(f"{name}: holds no record")
     wanted = {**tree}
     lines = text.splitlines()
     for section, fields in values.items():
@@ -77,28 +78,42 @@ def with_values(text: str, name: str, values: Values) -> str:
             raise CannotWrite(f"{name}: {section}.{taken[0]} already holds an answer; take it out "
                               "first, or add the lines by hand")  # fmt: skip
         wanted[section] = {**inside, **fields}
-        plain = parse("\n".join(lines), name)
-        lines = _added(lines, plain, section, fields)
+        lines = _added(lines, inside, section, fields)
     made = "\n".join(lines) + "\n"
-    if parse(made, name).tree != wanted:
+    if _tree(made, name) != wanted:
         raise CannotWrite(f"{name}: cannot find the place of the new lines; add them by hand")
     return made
 
 
-def _added(lines: list[str], plain: Plain, section: str, fields: dict[str, str]) -> list[str]:
-    there = plain.tree.get(section)
+def _tree(text: str, name: str) -> Any:
+    """What a text says; None where the new lines made it unreadable."""
+    try:
+        return parse(text, name).tree
+    except BadRecord:
+        return None
+
+
+def _added(
+    lines: list[str], inside: dict[str, Any], section: str, fields: dict[str, str]
+) -> list[str]:
+    """The lines with the fields added at the top of their section."""
     head = next((n for n, each in enumerate(lines) if _is_head(each, section)), None)
     if head is None:
         flow = next((n for n, each in enumerate(lines) if each.startswith(f"{section}: {{")), None)
         if flow is None:
             return [*lines, f"{section}:", *_block(fields, "  ")]
         return _into_flow(lines, flow, section, fields)
-    dent = "  "
-    if isinstance(there, dict):
-        dent = " " * (plain.places[section][1] - 1)
-        lines = [each for n, each in enumerate(lines) if n <= head or not _is_unknown_row(
-            each, dent, fields, n < _end(lines, head))]  # fmt: skip
-    return [*lines[:head], f"{section}:", *_block(fields, dent), *lines[head + 1 :]]
+    end = _end(lines, head)
+    own = lines[head + 1 : end]
+    dent = next((row[: len(row) - len(row.lstrip())] for row in own if _key(row) in inside), "  ")
+    kept = [row for row in own if not (_key(row) in fields and _key(row) in inside)]
+    return [*lines[:head], f"{section}:", *_block(fields, dent), *kept, *lines[end:]]
+
+
+def _key(row: str) -> str:
+    """The key that a line of a block begins with."""
+    match = re.match(r"\s+(\w+):(?:\s|$)", row)
+    return match[1] if match else ""
 
 
 def _is_head(line: str, section: str) -> bool:
@@ -109,11 +124,6 @@ def _end(lines: list[str], head: int) -> int:
     """Line where the next section begins."""
     later = range(head + 1, len(lines))
     return next((n for n in later if re.match(r"[^\s#]", lines[n])), len(lines))
-
-
-def _is_unknown_row(line: str, dent: str, fields: dict[str, str], inside: bool) -> bool:
-    match = re.fullmatch(rf"{dent}(\w+):\s*(?:unknown|~|null)?\s*(?:#.*)?", line)
-    return inside and bool(match) and match is not None and match[1] in fields
 
 
 def _into_flow(lines: list[str], at: int, section: str, fields: dict[str, str]) -> list[str]:

@@ -13,7 +13,7 @@ from pathlib import Path
 from triage.errors import BadRecord, CannotRead, CannotTell
 from triage.frozen import frozen
 from triage.logs.options import DELIMITERS, Options
-from triage.logs.stamps import SHAPES, time_columns
+from triage.logs.stamps import SHAPES, holds_time, time_columns
 from triage.logs.values import is_unit
 from triage.quantity import KINDS
 from triage.strict_yaml import BAD_CHARACTERS
@@ -85,11 +85,12 @@ def from_bytes(data: bytes, name: str, options: Options) -> Sheet:
         raise BadRecord([f"{name}: more than {MOST_BYTES // 10**6} MB; export the day alone"])
     text, encoding = _decoded(data, name, options)
     mark = _delimiter(text, name, options)
-    above, rows, others = _parted(_rows(io.StringIO(text), mark, name), name)
-    times = _times(rows[0], name)
+    above, times, below = _parted(_rows(io.StringIO(text), mark, name), name)
+    rows = tuple(row for row in below if holds_time(row[1], times))
+    others = tuple(row[0] for row in below if not holds_time(row[1], times))
     header, line = _header(above, times)
     return Sheet(name, sha256(data).hexdigest(), encoding, mark, header, line, times,
-                 tuple(rows), tuple(others))  # fmt: skip
+                 rows, others)  # fmt: skip
 
 
 def _decoded(data: bytes, name: str, options: Options) -> tuple[str, str]:
@@ -138,33 +139,27 @@ def _delimiter(text: str, name: str, options: Options) -> str:
     raise BadRecord([f"{name}: no row with a time and a value; times look like {SHAPES}"])
 
 
-def _parted(rows: Iterator[Row], name: str) -> tuple[list[Row], list[Row], list[int]]:
-    """Rows above the first time, rows with a time, line numbers of later rows without one."""
+def _parted(rows: Iterator[Row], name: str) -> tuple[list[Row], tuple[int, ...], list[Row]]:
+    """Rows above the first time, the columns of that time, and all rows from there."""
     above: list[Row] = []
-    found: list[Row] = []
-    others: list[int] = []
     for row in rows:
-        if time_columns(row[1]):
-            found.append(row)
-        elif found:
-            others.append(row[0])
-        else:
-            above.append(row)
-        if len(found) > MOST_ROWS:
-            raise BadRecord([f"{name}: more than {MOST_ROWS} rows; export the day alone"])
-    if not found:
-        raise BadRecord([f"{name}: no row with a time; times look like {SHAPES}"])
-    return above, found, others
+        times = time_columns(row[1])
+        if len(times) > 1:
+            both = " and ".join(str(each[0] + 1) for each in times)
+            raise CannotTell(
+                f"{name}:{row[0]}: columns {both} both hold a time; export with one of them"
+            )
+        if times:
+            return above, times[0], [row, *_limited(rows, name)]
+        above.append(row)
+    raise BadRecord([f"{name}: no row with a time; times look like {SHAPES}"])
 
 
-def _times(row: Row, name: str) -> tuple[int, ...]:
-    found = time_columns(row[1])
-    if len(found) > 1:
-        raise CannotTell(
-            f"{name}:{row[0]}: columns {' and '.join(str(each[0] + 1) for each in found)} both "
-            "hold a time; export with one of them"
-        )
-    return found[0]
+def _limited(rows: Iterator[Row], name: str) -> list[Row]:
+    found = list(islice(rows, MOST_ROWS))
+    if len(found) == MOST_ROWS:
+        raise BadRecord([f"{name}: more than {MOST_ROWS} rows; export the day alone"])
+    return found
 
 
 def _header(above: list[Row], times: tuple[int, ...]) -> tuple[tuple[str, ...], int]:

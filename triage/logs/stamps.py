@@ -63,6 +63,14 @@ def time_columns(cells: list[str]) -> list[tuple[int, ...]]:
     return found
 
 
+def holds_time(cells: list[str], columns: tuple[int, ...]) -> bool:
+    """Whether a row has a time in the columns of the time."""
+    if columns[-1] >= len(cells):
+        return False
+    shape = _STAMP if len(columns) == 1 else _DAY_ALONE
+    return shape.fullmatch(cells[columns[0]].strip()) is not None
+
+
 def read_stamps(texts: Iterable[tuple[int, str]], name: str, options: Options) -> Stamps:
     """Place every time of a log on one scale.
 

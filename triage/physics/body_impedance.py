@@ -4,13 +4,14 @@ What is not known takes the severe end: wet with salt, large contact, the 5th pe
 never above the hazard floor where a ceiling is asked for.
 """
 
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from functools import cache
 from math import exp, log, pi
 from statistics import NormalDist
 
 from triage.citation import Citation
 from triage.errors import InvalidValue, OutOfRange
+from triage.frozen import frozen
 from triage.physics.figures import section, value
 
 CONTACTS = ("large", "medium", "small")
@@ -23,7 +24,7 @@ _Z95 = NormalDist().inv_cdf(0.95)
 _SOURCE = "IEC/TS 60479-1"
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Spread:
     """Body impedance of the population at one voltage [ohm]: 5th, 50th and 95th percentile."""
 

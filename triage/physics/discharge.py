@@ -1,10 +1,10 @@
 """A discharge: charge, energy, what remains, peak current, and the test-bench equivalents."""
 
-from dataclasses import dataclass
 from math import atan2, atanh, exp, sin, sqrt
 
 from triage.errors import InvalidValue
 from triage.estimate import Estimate, product, through
+from triage.frozen import frozen
 from triage.physics.charging import Charged, softplus
 
 SPARK_RESISTANCE = 30.0
@@ -42,7 +42,7 @@ def voltage_for_energy(capacitance: float, energy: float) -> float:
     return float((2 * _positive("energy", energy) / _positive("capacitance", capacitance)) ** 0.5)
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class TwoBodies:
     """What passes between two floating bodies, and what stays.
 
@@ -85,7 +85,7 @@ def in_series(c1: Estimate, c2: Estimate) -> Estimate:
     return product("F", c1, through(lambda r: -softplus(r), ratio, unit="", order=10))
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Spark:
     """What a discharge of a charged body carries.
 
@@ -156,7 +156,7 @@ def specific_energy(capacitance: float, voltage: float, path: float) -> float:
     return stored_energy(capacitance, voltage) / _positive("resistance", path)
 
 
-@dataclass(frozen=True, slots=True)
+@frozen
 class Circuit:
     """A charged capacitance that discharges through a resistance and an inductance.
 
