@@ -193,6 +193,11 @@ def test_a_flag_of_the_circuit_stands_on_circuits_and_outlets_and_else_on_what_w
         tree = clean_tree(random.Random(9), story)
         tree["supply"]["alarm"] = "yes"
         assert standing(judged(tree), "monitor_alarm").items == wanted
+    tree = clean_tree(random.Random(9), "isolated_device")
+    tree["supply"]["alarm"] = "yes"
+    tree["items"].append({"id": "branch", "kind": "circuit"})
+    tree["items"][0] |= {"circuit": "branch", "outlet": "unknown"}
+    assert standing(judged(tree), "monitor_alarm").items == ("branch",)
 
 
 @pytest.mark.parametrize("beside", [

@@ -9,6 +9,7 @@ import typer
 
 from triage.command_input import (
     BAD_INPUT,
+    SEVERE,
     Files,
     SiteFile,
     assessed,
@@ -124,11 +125,12 @@ def blank(
 ) -> None:
     """Write an empty record with a new id and a comment at every field."""
     from triage.canonical import new_record_id
+    from triage.documents.field_guide import blank_record
     from triage.errors import CannotWrite
 
     try:
         with out.open("x", encoding="utf-8") as file:
-            file.write(blankrecord_from(new_record_id()))
+            file.write(blank_record(new_record_id()))
     except OSError as error:
         reason = error.strerror or "cannot be written"
         raise CannotWrite(f"{out}: {reason}; name a new file in a folder of yours") from None

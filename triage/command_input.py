@@ -29,10 +29,10 @@ def site_from(path: Path | None) -> "Site":
         CannotRead: the file cannot be opened.
         BadRecord: every fault found in it.
     """
-    from triage.site import load
+    from triage.site import load, no_site
 
     if path is None:
-        return nosite_from()
+        return no_site()
     from triage.site_check import site_faults
 
     found = load(path)
@@ -57,12 +57,14 @@ def record_from(path: Path) -> "Record | None":
 
 def assessed(files: list[Path], site: "Site") -> "list[Assessment | None]":
     """Every record assessed; None where its faults were printed."""
+    from triage.assessment import assess as assess_record
+
 
     found: list[Assessment | None] = []
     for path in files:
         record = record_from(path)
         try:
-            found.append(assessrecord_from(record, site) if record else None)
+            found.append(assess_record(record, site) if record else None)
         except TriageError as error:
             complain(error, str(path))
             found.append(None)

@@ -17,11 +17,11 @@ class PaperTexts:
     """
 
     def __init__(self, site: Site):
+        """Keep the language and the sentences of a site."""
         self.language = site.file.language or "en"
         self._own = {each.id: each.text for each in site.file.papers if each.text}
         self._foreign = not is_english(self.language)
-        self.missing: dict[str, None] = {}
-        """Ids printed in English for want of an entry, in the order of printing."""
+        self.missing: dict[str, None] = {}  # ids printed in English, in the order of printing
 
     def __call__(self, name: str, english: str | None = None) -> str:
         """The sentence of an id.

@@ -41,7 +41,9 @@ def brief(cases: Sequence[Assessment], site: Site, *, at: Moment, unread: Sequen
                          "blocks": [{"kind": "list", "lines": list(unread)}]})  # fmt: skip
     blank = [[t("brief.by"), ""], [t("brief.to"), ""]]
     sections.append({"title": t("brief.handed"), "blocks": [{"kind": "lines", "rows": blank}]})
-    matter = {"form": "wide", "heading": t("brief.title"), "lead": t("brief.lead"), "sections": sections}
+    matter = {
+        "form": "wide", "heading": t("brief.title"), "lead": t("brief.lead"), "sections": sections,
+    }  # fmt: skip
     made = site_paper("paper.html", t, site=site, title=t("brief.title"), matter=matter)
     whole = digest("".join(a.record.digest for a in cases).encode() + at.text.encode())
     return Paper(made.template, made.context, bytes.fromhex(whole)[:16], made.missing)

@@ -9,7 +9,7 @@ import json
 import os
 import re
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 from typing import Any
 
@@ -67,7 +67,8 @@ def save(path: Path, state: State, *, complete: bool, head: str = "") -> None:
         part.replace(path)
         _sync(path.parent)
     except OSError as error:
-        part.unlink(missing_ok=True)
+        with suppress(OSError):
+            part.unlink(missing_ok=True)
         reason = error.strerror or "cannot be written"
         raise CannotWrite(f"{path}: {reason}; the last saved answers are kept") from None
 
