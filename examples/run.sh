@@ -32,9 +32,12 @@ echo "Assessing them"
 run assess "$@" --site "$site" >"$out/assessments.txt"
 echo "Writing the reports"
 run report "$@" -o "$out" --site "$site" >"$out/reports.txt"
+run log examples/logs/or6-air.csv --record examples/incidents/or6-isolated-first-fault.yaml \
+    --site "$site" --date-order day-first >"$out/or6-air.txt"
 
 echo
 echo "Done. The reports are in $root/$out:"
 for report in "$out"/*.pdf; do echo "    ${report##*/}"; done
 echo "The same assessments as text: $root/$out/assessments.txt"
+echo "A humidity log read at the time of an event: $root/$out/or6-air.txt"
 echo "Values to confirm, if any: $root/$out/check.txt"

@@ -28,7 +28,7 @@ NEAR = {  # module: test files that take seconds, the closest first
     "diagnosis": ("diagnosis", "bayes_networks", "assessment"),
     "disposition": ("disposition", "red_flags", "breakage", "assessment"),
     "red_flags": ("red_flags", "disposition"),
-    "validity": ("validity", "evidence", "disposition"),
+    "validity": ("validity", "as_left", "evidence", "disposition"),
     "care": ("care",),
 }
 FAR = {  # those that take minutes

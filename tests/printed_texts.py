@@ -110,7 +110,7 @@ NOISE = re.compile(
 )
 """What Python prints of its own values."""
 
-FULL_OR_NIL = re.compile(r"(?<![\d.,])(?:0|100)(?:\.0+)?\s?%(?! RH| of it)")
+FULL_OR_NIL = re.compile(r"(?<![\d.,])(?:0|100)(?:\.0+)?\s?%(?! RH| (?:of|over|under|left) )")
 """A probability shown as certain; humidity and the share of a limit are another matter."""
 
 UNDERSCORED = re.compile(r"(?<![\w./-])[a-z]+(?:_[a-z0-9]+)+(?![\w/])")

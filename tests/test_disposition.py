@@ -121,6 +121,7 @@ def test_static_that_nobody_could_feel_is_no_explanation():
     tree["surroundings"] |= {"floor": "conductive", "footwear": "esd", "humidity": "70 %RH"}
     a = judged(tree)
     assert not a.gate.open
+    assert "static is not plausible here, or cannot be estimated" in a.gate.shut_by
 
 
 def test_the_headline_is_the_most_severe_of_all():
@@ -242,7 +243,7 @@ def test_too_much_left_unexplained_shuts_the_gate(monkeypatch):
     monkeypatch.setattr(triage.disposition, "knowledge", lambda: strict)
     gate = judged(clean_tree(random.Random(26), "plate")).gate
     assert gate.shut_by == ("too much stays unexplained by the causes on the list",)
-    assert gate.upper is None
+    assert gate.upper is None and not gate.open
 
 
 def test_a_chance_at_the_threshold_shuts_the_gate_and_both_are_told(monkeypatch):
@@ -318,3 +319,11 @@ def test_a_defect_of_no_named_item_is_a_defect_of_what_was_touched():
 def test_a_fail_through_the_cord_reaches_the_cord_and_one_of_the_device_alone_does_not():
     assert levels(with_fail("device", "earth_continuity"))["cord"] == Level.WITHDRAW
     assert levels(with_fail("device", "touch_current"))["cord"] < Level.WITHDRAW
+
+
+@pytest.mark.parametrize("calibrated", ["2027-01-01", "2020-01-01"])
+def test_a_check_that_also_failed_is_still_missing_although_it_passed_too(calibrated):
+    tree = with_fail("device", "touch_current")
+    tree["checks"][-1]["calibration_due"] = calibrated
+    missing = {each.item: each.missing for each in judged(tree).items}
+    assert "touch_current" in missing["pump"]

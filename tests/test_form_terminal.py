@@ -18,6 +18,7 @@ from form_answers import MAINS, STATIC
 from form_walk import NOW, fresh, walked
 from wording_rules import power_off_imperatives
 
+from triage.errors import CannotWrite, InvalidValue
 from triage.form import draft
 from triage.form.lines import Lines
 from triage.form.open_form import Opening, open_form
@@ -135,7 +136,9 @@ def test_killed_after_every_single_answer_nothing_is_lost(tmp_path: Path) -> Non
         child.stdin.flush()
         seen = b""
         while b"\n  = " not in seen:
-            seen += os.read(child.stdout.fileno(), 65536)
+            new = os.read(child.stdout.fileno(), 65536)
+            assert new, f"left at answer {number}: {seen.decode()}"
+            seen += new
         child.send_signal(signal.SIGKILL)
         child.wait()
         child.stdin.close()
@@ -229,7 +232,9 @@ def test_an_empty_record_of_the_program_is_filled_in(tmp_path: Path) -> None:
     path = tmp_path / "a.yaml"
     path.write_text(blank_record("1" * 32))
     filled(path, STATIC[:7])
-    assert load(path).incident.items[0].kind == "furniture_fixed"
+    incident = load(path).incident
+    assert incident.items[0].kind == "furniture_fixed"
+    assert (incident.recorded_by, incident.recorded_at.text) == (BY, NOW.text)
 
 
 def test_help_back_and_the_assessment_change_nothing(tmp_path: Path, capsys) -> None:
@@ -287,3 +292,31 @@ def test_without_a_file_a_new_one_is_named_after_the_case(tmp_path: Path) -> Non
     subprocess.run(argv, input=b"nobody\n", cwd=tmp_path, env=env, check=True, capture_output=True)
     (made,) = tmp_path.iterdir()
     assert made.stem == load(made).case
+
+
+@pytest.mark.parametrize("name", [".", "folder", "missing/a.yaml"])
+def test_a_place_that_cannot_hold_a_draft_is_refused_in_a_sentence(
+    tmp_path: Path, monkeypatch, name: str
+) -> None:
+    (tmp_path / "folder").mkdir()
+    monkeypatch.chdir(tmp_path)
+    with pytest.raises(CannotWrite, match="name a file"):
+        filled(Path(name), STATIC)
+
+
+@pytest.mark.parametrize("by", ["x" * 81, "half \ud800", "bell\x07"])
+def test_a_role_that_no_record_could_hold_is_refused_before_anything_is_written(
+    tmp_path: Path, by: str
+) -> None:
+    with pytest.raises(InvalidValue):
+        filled(tmp_path / "a.yaml", STATIC, by=by)
+    assert list(tmp_path.iterdir()) == []
+
+
+def test_bytes_that_are_no_text_stop_a_pipe_with_a_sentence(tmp_path: Path) -> None:
+    found = subprocess.run(
+        command(tmp_path / "a.yaml"), input=b"nobody\n\xff\n", capture_output=True
+    )
+    assert found.returncode == 1
+    assert b"Traceback" not in found.stderr
+    assert load(tmp_path / "a.yaml").incident.persons[0].signs == ("none",)

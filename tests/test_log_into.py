@@ -9,13 +9,16 @@ from typer.testing import CliRunner
 
 from triage.cli import app
 from triage.clock import parse as parse_time
+from triage.documents.log_reading import log_lines
 from triage.errors import CannotTell, CannotWrite
 from triage.logs.into import as_yaml, values_for, with_values
 from triage.logs.log import loads
 from triage.logs.options import Options
 from triage.logs.question import Question, answer
 from triage.logs.reading import LogReading, reading_at
+from triage.record import load as load_record
 from triage.record import loads as record_from
+from triage.site import load as load_site
 from triage.site import loads as site_from
 from triage.site import no_site
 from triage.strict_yaml import parse
@@ -62,7 +65,9 @@ def test_the_copy_says_what_the_record_said_and_the_reading(ending: str) -> None
     assert incident.surroundings.humidity.text == "24.5 %"
 
 
-@pytest.mark.parametrize("ending", ["surroundings: {humidity: 40 %}\n", "surroundings:\n  log_excerpt: x\n"])
+@pytest.mark.parametrize(
+    "ending", ["surroundings: {humidity: 40 %}\n", "surroundings:\n  log_excerpt: x\n"]
+)
 def test_an_answer_that_stands_is_never_replaced(ending: str) -> None:
     with pytest.raises(CannotWrite, match="already holds an answer"):
         with_values(START + ending, "record", values_for(reading()))
@@ -70,7 +75,9 @@ def test_an_answer_that_stands_is_never_replaced(ending: str) -> None:
 
 def test_a_form_of_file_that_is_not_understood_is_refused_and_not_damaged() -> None:
     with pytest.raises(CannotWrite, match="by hand"):
-        with_values("{schema: '1', surroundings: {floor: vinyl}}\n", "record", values_for(reading()))
+        with_values(
+            "{schema: '1', surroundings: {floor: vinyl}}\n", "record", values_for(reading())
+        )
 
 
 @pytest.mark.parametrize(
@@ -79,7 +86,9 @@ def test_a_form_of_file_that_is_not_understood_is_refused_and_not_damaged() -> N
      ("monitor-current", "Hazard current [mA]", "1.9", "supply", "current_reading", "1.90 mA"),
      ("monitor-resistance", "Insulation [kohm]", ">500", "supply", "resistance_reading", "> 500 kΩ")],
 )  # fmt: skip
-def test_each_kind_has_its_field(kind: str, header: str, cell: str, section: str, field: str, text: str) -> None:
+def test_each_kind_has_its_field(
+    kind: str, header: str, cell: str, section: str, field: str, text: str
+) -> None:
     data = f"Time,{header}\n2026-01-14 07:10,{cell}\n2026-01-14 07:30,{cell}\n".encode()
     values = values_for(reading(kind, data))
     assert values[section][field] == text
@@ -92,7 +101,9 @@ def test_what_is_printed_is_what_the_record_understands() -> None:
     assert parse("\n".join(lines), "printed").tree == values_for(reading())
 
 
-@pytest.mark.parametrize("name", ["a: b.csv", "- x.csv", "#x.csv", "'x'.csv", " x.csv", "x\u202e.csv"])
+@pytest.mark.parametrize(
+    "name", ["a: b.csv", "- x.csv", "#x.csv", "'x'.csv", " x.csv", "x\u202e.csv"]
+)
 def test_no_file_name_breaks_the_lines(name: str) -> None:
     log = loads(CSV, name, Options("humidity", "UTC"))
     values = values_for(reading_at(log, parse_time("2026-01-14 07:20"), "UTC"))
@@ -115,8 +126,8 @@ def test_the_room_of_the_record_names_the_sensor_and_its_doubt(tmp_path: Path) -
     air, case, _ = files(tmp_path)
     found = answer(air, Options(), Question(None, case, site_from(SITE)))
     assert found.sensor_doubt == 2.0
-    # Rows of 24 and 25: half-width 0.5, JCGM 100:2008, 4.3.7.
-    assert found.doubt == pytest.approx((2.0**2 + 0.5**2 / 3) ** 0.5)
+    # Rows of 24 and 25: half-width 0.5, and a step of 1; JCGM 100:2008, 4.3.7 and F.2.2.1.
+    assert found.doubt == pytest.approx((2.0**2 + 0.5**2 / 3 + 1 / 12) ** 0.5)
 
 
 def test_another_sensor_than_the_rooms_is_said_and_does_not_lend_its_doubt(tmp_path: Path) -> None:
@@ -144,7 +155,9 @@ def test_the_command_prints_and_writes_a_new_file_once(tmp_path: Path) -> None:
     assert "At 2026-01-14 07:20: 24.5 %" in done.output
     assert record_from(new.read_text("utf-8")).incident.surroundings.sensor is not None
     before = new.read_bytes(), case.read_bytes()
-    again = subprocess.run([sys.executable, "-m", "triage", *words], capture_output=True, text=True, check=False)
+    again = subprocess.run(
+        [sys.executable, "-m", "triage", *words], capture_output=True, text=True, check=False
+    )
     assert again.returncode == 1
     assert "name a new file" in again.stderr
     assert "Traceback" not in again.stderr
@@ -154,6 +167,29 @@ def test_the_command_prints_and_writes_a_new_file_once(tmp_path: Path) -> None:
 @pytest.mark.parametrize("kind", ["humidity", "events"])
 def test_every_sentence_of_the_command_fits_a_terminal(tmp_path: Path, kind: str) -> None:
     air, _, _ = files(tmp_path)
-    done = CliRunner().invoke(app, ["log", str(air), "--at", "2026-01-14 07:20Z", "--zone", "UTC", "--kind", kind])
+    done = CliRunner().invoke(
+        app, ["log", str(air), "--at", "2026-01-14 07:20Z", "--zone", "UTC", "--kind", kind]
+    )
     assert done.exit_code == 0
     assert all(len(line) <= 80 for line in done.output.splitlines() if not line.startswith("  "))
+
+
+EXAMPLES = Path(__file__).parent.parent / "examples"
+FIRST_FAULT = EXAMPLES / "incidents" / "or6-isolated-first-fault.yaml"
+
+
+def test_the_example_logs_agree_with_the_example_record() -> None:
+    site, record = load_site(EXAMPLES / "site.yaml"), load_record(FIRST_FAULT).incident
+    said = Options(date_order="day-first")
+    air = answer(EXAMPLES / "logs" / "or6-air.csv", said, Question(None, FIRST_FAULT, site))
+    assert record.surroundings.humidity is not None
+    assert air.value == pytest.approx(record.surroundings.humidity.value, abs=0.5)
+    said = Options("monitor-current", zone="UTC", ahead=420)
+    shown = answer(EXAMPLES / "logs" / "or6-monitor.csv", said, Question(None, FIRST_FAULT, site))
+    assert record.supply.current_reading is not None
+    assert shown.value == pytest.approx(record.supply.current_reading.value, rel=0.02)
+    # Without the clock error the same log shows the supply as it was before the fault.
+    said = Options("monitor-current", zone="UTC")
+    early = answer(EXAMPLES / "logs" / "or6-monitor.csv", said, Question(None, FIRST_FAULT, site))
+    assert early.value == pytest.approx(1.5e-3, rel=0.05)
+    assert "is the log's clock right?\n" in "\n".join(log_lines(early))

@@ -167,6 +167,26 @@ def test_an_answer_settles_what_was_asked() -> None:
     assert read(text, "2026-03-04 07:20", date_order="month-first").value == pytest.approx(24.525)
 
 
+@pytest.mark.parametrize(
+    ("text", "hour"),
+    [("12:30 AM", 0), ("1:30 am", 1), ("12:30 PM", 12), ("1:30 p.m.", 13), ("11:30PM", 23)],
+)
+def test_noon_and_midnight_of_the_twelve_hour_clock(text: str, hour: int) -> None:
+    # The convention of 12 PM for noon: strptime %I %p of the standard library.
+    plain = text.replace(".", "").replace(" ", "").upper()
+    assert datetime.strptime(plain, "%I:%M%p").hour == hour
+    at, _ = log(export(f"01/14/2026 {text},24")).moments[0]
+    assert at == datetime(2026, 1, 14, hour, 30, tzinfo=UTC).timestamp()
+
+
+def test_an_open_quote_does_not_swallow_the_rest_in_silence() -> None:
+    with pytest.raises(BadRecord, match="not readable as CSV"):
+        log(
+            'Time,Humidity [%],Note\n2026-01-14 07:20,24,x\n2026-01-14 07:30,25,"y\n',
+            delimiter="comma",
+        )
+
+
 def test_one_date_that_decides_decides_for_all() -> None:
     text = export("12/01/2026 07:20,24.0", "13/01/2026 07:20,25.0")
     assert [at for at, _ in log(text).moments] == [
@@ -210,6 +230,15 @@ def test_of_a_monitor_the_least_favourable_row_counts(
                   header="Time,Insulation or current")  # fmt: skip
     found = read(text, kind=kind, column="2")
     assert found.value == pytest.approx(worst)
+
+
+@pytest.mark.parametrize(
+    ("kind", "worst"), [("monitor-current", 1.9e-3), ("monitor-resistance", 0.2e3)]
+)
+def test_of_two_rows_of_one_time_the_less_favourable_counts(kind: str, worst: float) -> None:
+    unit = "mA" if kind == "monitor-current" else "kohm"
+    text = export(f"2026-01-14 07:20,0.2 {unit}", f"2026-01-14 07:20,1.9 {unit}", header="Time,X")
+    assert log(text, kind=kind, column="X").samples[0].value == pytest.approx(worst)
 
 
 def test_a_reading_beyond_the_range_keeps_its_bound() -> None:
@@ -260,26 +289,43 @@ def test_a_log_with_nothing_odd_has_no_flag() -> None:
 
 def steady(value: str, hours: int, start: str = "2026-01-14 00:00") -> list[str]:
     begin = datetime.fromisoformat(start)
-    return [f"{begin + timedelta(minutes=10 * n):%Y-%m-%d %H:%M},{value}" for n in range(6 * hours + 1)]
+    return [
+        f"{begin + timedelta(minutes=10 * n):%Y-%m-%d %H:%M},{value}" for n in range(6 * hours + 1)
+    ]
 
 
 def test_a_value_that_stands_still_for_hours_is_said_near_the_event_only() -> None:
     text = export(*steady("31.0", 8))
     assert "the same value in 49 rows" in " ".join(read(text).flags)
     moving = [f"2026-01-14 {9 + n // 6:02}:{n % 6 * 10:02},{40 + n / 10}" for n in range(20)]
-    assert "same value" not in " ".join(read(export(*steady("31.0", 8), *moving), "2026-01-14 11:20").flags)
+    assert "same value" not in " ".join(
+        read(export(*steady("31.0", 8), *moving), "2026-01-14 11:20").flags
+    )
+
+
+def test_a_sensor_that_gives_zero_is_doubted() -> None:
+    assert "a failed sensor?" in " ".join(read(PLAIN.replace("25.0", "0.0")).flags)
+    assert "a failed sensor?" not in " ".join(read(PLAIN.replace("24.0", "0.0")).flags)
 
 
 def test_a_clock_that_drifts_against_its_step_is_said() -> None:
     begin = datetime(2026, 1, 14)
-    slow = [f"{begin + timedelta(seconds=601 * n):%Y-%m-%d %H:%M:%S},{20 + n % 3}" for n in range(60)]
-    true = [f"{begin + timedelta(seconds=600 * n):%Y-%m-%d %H:%M:%S},{20 + n % 3}" for n in range(60)]
+    slow = [
+        f"{begin + timedelta(seconds=601 * n):%Y-%m-%d %H:%M:%S},{20 + n % 3}" for n in range(60)
+    ]
+    true = [
+        f"{begin + timedelta(seconds=600 * n):%Y-%m-%d %H:%M:%S},{20 + n % 3}" for n in range(60)
+    ]
     assert "rows wander +59 s" in " ".join(log(export(*slow)).flags)
     assert "wander" not in " ".join(log(export(*true)).flags)
 
 
 def test_twelve_hour_times_without_am_and_pm_are_said() -> None:
-    rows = [f"{day}.01.2026 {hour}:00;3{hour % 10}" for day in (14, 15) for hour in (*range(1, 13), *range(1, 13))]
+    rows = [
+        f"{day}.01.2026 {hour}:00;3{hour % 10}"
+        for day in (14, 15)
+        for hour in (*range(1, 13), *range(1, 13))
+    ]
     found = log("Time;Humidity [%]\n" + "\n".join(rows))
     assert "without AM and PM" in " ".join(found.flags)
 
@@ -307,7 +353,9 @@ def test_the_doubled_hour_with_offsets_is_read() -> None:
 
 
 def test_a_time_that_the_zone_skips_shows_a_clock_that_does_not_follow() -> None:
-    found = log(export("2026-03-29 01:50,30", "2026-03-29 02:10,31", "2026-03-29 03:10,31"), zone=VIENNA)
+    found = log(
+        export("2026-03-29 01:50,30", "2026-03-29 02:10,31", "2026-03-29 03:10,31"), zone=VIENNA
+    )
     assert "line 3: left out, the clock change skips this hour" in " ".join(found.flags)
 
 
@@ -324,11 +372,12 @@ def test_wall_times_are_placed_as_zoneinfo_places_them(wall: datetime) -> None:
 # The reading
 
 
-def test_doubt_joins_the_rows_and_the_sensor() -> None:
-    # JCGM 100:2008, 4.3.7: half-width a gives a / sqrt(3); a = 0.25 here, the sensor's own 2.
+def test_doubt_joins_the_rows_the_step_of_the_values_and_the_sensor() -> None:
+    # JCGM 100:2008: 4.3.7, half-width a gives a / sqrt(3), a = 0.25 between 24.5 and 25.0;
+    # F.2.2.1, a step of 0.5 gives 0.29 times 0.5; 5.1.2, squares add. The sensor's own is 2.
     found = reading_at(log(PLAIN), parse("2026-01-14 07:20"), "UTC", sensor_doubt=2.0)
-    assert found.doubt == pytest.approx((0.25**2 / 3 + 2.0**2) ** 0.5)
-    assert read(PLAIN).doubt == pytest.approx(0.25 / 3**0.5)
+    assert found.doubt == pytest.approx((0.25**2 / 3 + (0.29 * 0.5) ** 2 + 2.0**2) ** 0.5, rel=1e-3)
+    assert read(PLAIN).doubt == pytest.approx((0.25**2 / 3 + (0.29 * 0.5) ** 2) ** 0.5, rel=0.01)
 
 
 def test_an_event_known_to_the_hour_has_the_doubt_of_the_hour() -> None:
@@ -371,7 +420,9 @@ def test_the_hour_before_agrees_with_the_statistics_of_the_standard_library() ->
     assert found is not None
     assert found.rows == len(hour) == 7
     assert found.mean == pytest.approx(statistics.fmean(v for _, v in hour))
-    line = statistics.linear_regression([t.timestamp() / 3600 for t, _ in hour], [v for _, v in hour])
+    line = statistics.linear_regression(
+        [t.timestamp() / 3600 for t, _ in hour], [v for _, v in hour]
+    )
     assert found.slope == pytest.approx(line.slope, rel=1e-4)
 
 
@@ -397,8 +448,35 @@ def test_the_excerpt_fits_into_the_field_of_the_record() -> None:
     rows = [f"{begin + timedelta(seconds=n):%Y-%m-%d %H:%M:%S},{20 + n % 7}" for n in range(6000)]
     found = read(export(*rows))
     assert len(found.excerpt) <= 6000
-    assert "earlier rows left out" in found.excerpt
+    assert "rows further from the event left out" in found.excerpt
     assert found.excerpt.endswith("2026-01-14 07:21:00,22")
+
+
+def test_a_full_log_of_events_keeps_the_rows_nearest_to_the_event() -> None:
+    begin = datetime(2026, 1, 14, 6)
+    rows = [f"{begin + timedelta(seconds=10 * n):%Y-%m-%d %H:%M:%S},event {n}" for n in range(1000)]
+    found = read(export(*rows), kind="events")
+    assert "2026-01-14 07:20:00,event 480" in found.excerpt
+    assert "event 400," not in found.excerpt
+    assert len(found.excerpt) <= 6000
+
+
+@pytest.mark.parametrize(
+    ("kind", "cells", "flagged"),
+    [("monitor-current", ("1.5 mA", "1.6 mA", "7.4 mA"), True),
+     ("monitor-current", ("1.5 mA", "1.6 mA", "1.7 mA"), False),
+     ("monitor-resistance", ("900 kohm", "900 kohm", "30 kohm"), True),
+     ("monitor-resistance", ("900 kohm", "900 kohm", "890 kohm"), False)],
+)  # fmt: skip
+def test_a_monitor_that_is_worse_within_the_hour_raises_the_question_of_its_clock(
+    kind: str, cells: tuple[str, ...], flagged: bool
+) -> None:
+    text = export(
+        *(f"2026-01-14 07:{15 + 10 * n},{cell}" for n, cell in enumerate(cells)), header="Time,X"
+    )
+    assert (
+        "is the log's clock right?" in " ".join(read(text, kind=kind, column="X").flags)
+    ) == flagged
 
 
 def test_a_log_of_events_keeps_its_rows_and_says_nothing_about_alarms() -> None:
@@ -415,7 +493,9 @@ SERIES = st.lists(st.integers(0, 1000), min_size=4, max_size=30)
 
 
 def rows_of(values: list[int], start: datetime) -> list[str]:
-    return [f"{start + timedelta(minutes=7 * n):%Y-%m-%d %H:%M},{v / 10}" for n, v in enumerate(values)]
+    return [
+        f"{start + timedelta(minutes=7 * n):%Y-%m-%d %H:%M},{v / 10}" for n, v in enumerate(values)
+    ]
 
 
 def said(found: LogReading) -> tuple[object, ...]:
@@ -431,7 +511,7 @@ def test_the_order_of_rows_changes_nothing_but_the_flag(values: list[int], shuff
     assert said(read(export(*rows))) == said(read(export(*other)))
 
 
-@given(SERIES, st.integers(-10**6, 10**6))
+@given(SERIES, st.integers(-(10**6), 10**6))
 @settings(max_examples=60, deadline=None)
 def test_moving_log_and_event_by_the_same_time_changes_nothing(values: list[int], by: int) -> None:
     move = timedelta(minutes=by)
@@ -483,6 +563,11 @@ def test_a_hostile_file_is_one_message_or_no_reading(what: str, kind: str) -> No
         assert found.value is None
 
 
+def test_a_file_that_is_no_text_is_called_so() -> None:
+    with pytest.raises(BadRecord, match="byte 4 is zero; not a text log"):
+        log(HOSTILE["a zip file"])
+
+
 def test_formulas_of_a_spreadsheet_stay_text_and_are_not_numbers() -> None:
     found = log(export("2026-01-14 07:20,=1+1", "2026-01-14 07:30,=cmd|'/c x'!A1"))
     assert found.samples == ()
@@ -508,7 +593,9 @@ def test_any_bytes_give_a_reading_or_a_known_error(data: bytes) -> None:
         assert found.value is None or 0 <= found.value <= 100
 
 
-@given(st.lists(st.text(st.sampled_from('0123456789.,;:-/ \t"AP M%RH<>TZ+'), max_size=30), max_size=8))
+@given(
+    st.lists(st.text(st.sampled_from('0123456789.,;:-/ \t"AP M%RH<>TZ+'), max_size=30), max_size=8)
+)
 @settings(max_examples=300, deadline=None)
 def test_any_text_like_a_log_gives_a_reading_or_a_known_error(lines: list[str]) -> None:
     try:

@@ -4,10 +4,9 @@ import pytest
 from sample_records import spoiled, text, tree
 
 from triage.check_table import check_kinds
-from triage.evidence import gather
 from triage.record import loads
 from triage.site import Site, no_site
-from triage.validity import CheckVerdict, covers, judge_checks
+from triage.validity import CheckVerdict, judge_checks
 
 CHECK = "checks.0."
 
@@ -347,60 +346,6 @@ def test_a_mild_disturbance_that_is_named_leaves_the_check_valid() -> None:
 def test_a_scene_changed_after_the_check_leaves_it_valid() -> None:
     later = {"scene.changes": ["cleaned"], "scene.changed_at": "2026-01-14 10:00"}
     assert verdict(later).state == "valid_pass"
-
-
-# ---------------------------------------------------------------------- as left
-
-
-@pytest.mark.parametrize("value", ["40 uA", "20 mA"])
-def test_as_left_never_speaks_about_what_was_felt(value: str) -> None:
-    left = check(stage="as_left", value=value, result=None, disturbed=["repaired"])
-    incident = loads(text(spoiled(left))).incident
-    verdicts = judge_checks(incident, no_site())
-    assert verdicts[0].as_left
-    without = loads(text(spoiled({"checks": []}))).incident
-    found, bare = gather(incident, verdicts, "earthed"), gather(without, (), "earthed")
-    # That the item is defective still, after repair, is another matter than the event.
-    assert [each.check for each in found.defects] == ["touch_current"] * (value == "20 mA")
-    assert {k: o.state for k, o in found.observed.items()} == {
-        k: o.state for k, o in bare.observed.items()
-    }
-
-
-@pytest.mark.parametrize("name", ["wrong method", "isolated supply", "calibration not known", "before the event",
-                                  "time not known", "no value", "unit in doubt", "not said of which item"])  # fmt: skip
-def test_as_left_is_no_excuse_for_a_doubtful_reading(name: str) -> None:
-    assert verdict({**check(stage="as_left"), **SPOILS[name]}).state == "invalid_pass"
-
-
-def test_as_left_may_follow_repair_with_a_new_cord() -> None:
-    left = check(stage="as_left", same_cord="no", disturbed=["repaired", "cord_swapped"])
-    assert verdict(left).state == "valid_pass"
-
-
-# ---------------------------------------------------------------------- which item a check speaks about
-
-
-def test_a_check_speaks_about_its_item_its_outlet_and_the_cord_it_was_made_with() -> None:
-    changed = spoiled({
-        "items.0.cord": "cord-1",
-        "checks": [
-            {"id": "k1", "kind": "outlet_test", "of": "w3-1"},
-            {"id": "k2", "kind": "earth_continuity", "of": "pump", "same_cord": "yes"},
-            {"id": "k3", "kind": "earth_continuity", "of": "pump", "same_cord": "no"},
-            {"id": "k4", "kind": "touch_current", "of": "pump", "same_cord": "yes"},
-            {"id": "k5", "kind": "two_metal_voltage", "of": "pump", "second": "cord-2"},
-            {"id": "k6", "kind": "outlet_test"},
-        ],
-    })  # fmt: skip
-    incident = loads(text(changed)).incident
-    about = {
-        c.id: {i.id for i in incident.items if covers(c, i, incident)} for c in incident.checks
-    }
-    assert about == {
-        "k1": {"pump", "w3-1"}, "k2": {"pump", "cord-1"}, "k3": {"pump"}, "k4": {"pump"},
-        "k5": {"pump", "cord-2"}, "k6": set(),
-    }  # fmt: skip
 
 
 def test_every_kind_of_check_in_every_state_of_the_sample_is_judged() -> None:

@@ -59,7 +59,6 @@ def assessed(files: list[Path], site: "Site") -> "list[Assessment | None]":
     """Every record assessed; None where its faults were printed."""
     from triage.assessment import assess as assess_record
 
-
     found: list[Assessment | None] = []
     for path in files:
         record = record_from(path)

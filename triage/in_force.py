@@ -13,6 +13,8 @@ from triage.verdict import Judgement, judge
 
 _FOLLOWS = {"monitor_log": "isolated_alarm_test"}
 """Checks that follow the edition named for another: one monitor has one alarm value."""
+OWN = "site file"
+"""How the source of a limit made stricter begins."""
 
 
 def held_against_limits(
@@ -101,7 +103,7 @@ def tightened(limit: Limit, site: Site) -> Limit:
         return limit
     if value.bound or not is_stricter(value.value, limit):
         return limit
-    cited = Citation(f"site file, stricter than {limit.text} of {limit.edition.text()}")
+    cited = Citation(f"{OWN}, stricter than {limit.text} of {limit.edition.text()}")
     return replace(limit, value=value.value, text=value.text, citation=cited, disputed=False)
 
 

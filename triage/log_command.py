@@ -1,15 +1,12 @@
 """The command that reads a log; its many options say what the file itself does not prove."""
 
 from pathlib import Path
-from typing import TYPE_CHECKING, Annotated
+from typing import Annotated
 
 import typer
 
-from triage.errors import BadRecord
+from triage.command_input import SiteFile, site_from
 from triage.visible import visible
-
-if TYPE_CHECKING:
-    from triage.site import Site
 
 
 def log(
@@ -21,7 +18,7 @@ def log(
     into: Annotated[
         Path | None, typer.Option("--into", help="New file: the record with the lines added.")
     ] = None,
-    site: Annotated[Path | None, typer.Option(help="The facility's own file.")] = None,
+    site: SiteFile = None,
     kind: Annotated[
         str,
         typer.Option(help="humidity, temperature, monitor-current, monitor-resistance or events."),
@@ -49,19 +46,7 @@ def log(
     ahead = seconds(clock_error) if clock_error else 0.0
     options = Options(kind, zone, sensor, column, unit, encoding, delimiter, decimal, date_order,
                       ahead)  # fmt: skip
-    reading = answer(file, options, Question(at, record, _site(site)))
+    reading = answer(file, options, Question(at, record, site_from(site)))
     if into:
         write_into(reading, record, into)
     typer.echo(visible("\n".join(log_lines(reading))))
-
-
-def _site(path: Path | None) -> "Site":
-    from triage.site import load, no_site
-    from triage.site_check import site_faults
-
-    if path is None:
-        return no_site()
-    found = load(path)
-    if faults := site_faults(found):
-        raise BadRecord([f"{path}: {fault}" for fault in faults])
-    return found

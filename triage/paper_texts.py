@@ -4,7 +4,9 @@ from collections.abc import Iterator, Mapping
 from functools import cache
 from typing import Any
 
+from triage.check_table import check_kinds
 from triage.errors import BadTable
+from triage.questions import every_question, room_defaults
 from triage.site import Site
 from triage.tables import table
 
@@ -56,6 +58,19 @@ class PaperTexts:
 def is_english(language: str) -> bool:
     """Whether a language tag says English; those sentences are shipped and cannot be reworded."""
     return language.lower().split("-")[0] == "en"
+
+
+@cache
+def sentence_ids() -> frozenset[str]:
+    """Every id that a site can bring a sentence for: the catalogue and what other tables hold."""
+    asked = [question for _, question in every_question()]
+    found = {f"ask.{q.id}" for q in asked}
+    found |= {f"option.{q.id}.{o.word}" for q in asked for o in q.options}
+    found |= {f"check.{each}" for each in check_kinds()}
+    found |= {f"caution.{row['id']}" for row in table("cautions")["cautions"]}
+    found |= {f"watch.{n}" for n, _ in enumerate(table("care")["watch_for"], 1)}
+    found |= {f"default.{name}" for name in room_defaults()}
+    return frozenset(found | set(catalogue()))
 
 
 @cache

@@ -129,9 +129,7 @@ def _pdf(
         document = (
             weasyprint()
             .HTML(string=printable, base_url=base_url(), url_fetcher=own_files())
-            .render(
-                font_config=configuration, stylesheets=[faces], pdf_variant=variant, **options
-            )
+            .render(font_config=configuration, stylesheets=[faces], pdf_variant=variant, **options)
         )
         document.metadata.title = visible(title)
         content = document.write_pdf(finisher=finisher, pdf_variant=variant, **options)

@@ -12,8 +12,9 @@ from triage.fields import table as rows_of
 from triage.in_force import is_stricter
 from triage.knowledge import knowledge
 from triage.limits import Limit, load_limits
+from triage.paper_texts import is_english, sentence_ids
 from triage.quantity import parse
-from triage.site import Edition, Raised, Site, Tightened
+from triage.site import Edition, PaperText, Raised, Site, Tightened
 from triage.tables import table
 
 
@@ -36,6 +37,8 @@ def _faults(site: Site) -> Iterator[str]:
         yield from _tightened_faults(stricter, f"tightened[{number}]")
     for number, raised in enumerate(site.file.policy.raised):
         yield from _raised_faults(raised, f"policy.raised[{number}]")
+    for number, sentence in enumerate(site.file.papers):
+        yield from _paper_faults(sentence, site, f"papers[{number}]")
     for part in ("wording", "contacts"):
         for name, _ in rows_of(type(getattr(site.file, part))):
             yield from _wording_faults(getattr(getattr(site.file, part), name), f"{part}.{name}")
@@ -72,6 +75,16 @@ def _tightened_faults(row: Tightened, path: str) -> Iterator[str]:
         return
     if value.bound or not (is_stricter(value.value, limit) or value.value == limit.value):
         yield f"{path}.value: '{value.text}' is not stricter; {_allowed(limit)}"
+
+
+def _paper_faults(row: PaperText, site: Site, path: str) -> Iterator[str]:
+    """A site brings its language; the shipped English sentences are not reworded."""
+    if is_english(site.file.language or "en"):
+        yield f"{path}: the papers are in English already; name another language or take it out"
+    if row.id not in sentence_ids():
+        yield f"{path}.id: '{row.id}' is no sentence of the papers"
+    if not row.text:
+        yield f"{path}.text: is empty; take the row out and the English sentence is printed"
 
 
 def _allowed(limit: Limit) -> str:

@@ -97,5 +97,3 @@ def _current(a: Assessment, t: PaperTexts) -> str:
     if worst is None:
         return t("care_slip.no_bound")
     return f"{amount(worst, 'current')}: {t('care_slip.bound')}"
-
-

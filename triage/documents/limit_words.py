@@ -2,7 +2,7 @@
 
 from triage.check_table import CheckKind
 from triage.documents.wording import NBSP, spoken
-from triage.in_force import limits_of_kind
+from triage.in_force import OWN, limits_of_kind
 from triage.limits import ANY, Limit
 from triage.site import Site
 
@@ -34,7 +34,9 @@ def _one(row: Limit, telling: list[str]) -> str:
     for typed, printed in _UNIT:
         value = value.replace(typed, printed)
     words = [each for p in telling if (each := _property(row, p))]
-    star = _NOT_READ if row.warning else ""
+    own = row.citation.source.startswith(OWN)
+    star = _NOT_READ if row.warning and not own else ""
+    words += ["set by the site"] if own else []
     return " ".join([f"{_SIGN[row.sense, row.strict]}{NBSP}{value}{star}", *words])
 
 

@@ -20,7 +20,7 @@ def log_lines(reading: LogReading) -> Iterator[str]:
         yield "The rows around the event are in the excerpt below. A missing row of an"
         yield "alarm does not mean that there was none; not every log holds every alarm."
     for each in (*reading.flags, *log.flags):
-        yield f"Look: {each}."
+        yield f"Look: {each}{'' if each.endswith('?') else '.'}"
     yield ""
     yield "To enter in the record:"
     yield from (f"  {line}" for line in as_yaml(values_for(reading)))
@@ -47,7 +47,7 @@ def _value(reading: LogReading) -> Iterator[str]:
         yield f"  from '{reading.log.sensor}'."
     if reading.value is not None and reading.low is not None and reading.high is not None:
         yield f"Rows around it: {as_typed(reading.low, kind)} to {as_typed(reading.high, kind)}."
-    if reading.doubt is not None:
+    if reading.doubt is not None and kind in ("humidity", "temperature"):
         own = "with" if reading.sensor_doubt else "without"
         yield f"Doubt (one standard deviation): {_difference(reading.doubt, kind)},"
         yield f"  {own} the doubt of the sensor itself, which only a site file can state."
@@ -69,8 +69,8 @@ def _before(trend: Trend, kind: str) -> Iterator[str]:
 def _difference(size: float, kind: str) -> str:
     """A difference of two values, in points for humidity."""
     if kind == "humidity":
-        return f"{size:.1f} points"
-    return f"{size:.1f} K" if kind == "temperature" else as_typed(size, kind)
+        return f"{size:.2g} points"
+    return f"{size:.2g} K" if kind == "temperature" else as_typed(size, kind)
 
 
 def _to_answer(reading: LogReading) -> Iterator[str]:

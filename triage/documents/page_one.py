@@ -168,7 +168,7 @@ def _sections(page: dict[str, Any]) -> Iterator[float]:
            + _text(equipment["room"]))  # fmt: skip
     quotes = page["happened"]["quotes"]
     yield _text(page["happened"]["summary"]) + sum(
-        _text(f"{q['heading']}  {q['text']}", _WIDTH - 10) + 1.2 for q in quotes
+        _text(f"{q['heading']}\n{q['text']}", _WIDTH - 10) + 1.2 for q in quotes
     )
     yield _lead(causes["summary"]) + _table((63, 17, 20), causes["rows"]) + _text(causes["note"])
     yield _table((41, 10, 20, 29), page["estimates"])

@@ -56,9 +56,7 @@ def case_paper(
     return Paper(template, context, _identifier(a.record.digest, template), tuple(texts.missing))
 
 
-def _frame(
-    texts: PaperTexts, site: Site, *, title: str, issue: str, digest: str
-) -> dict[str, Any]:
+def _frame(texts: PaperTexts, site: Site, *, title: str, issue: str, digest: str) -> dict[str, Any]:
     return {
         "language": texts.language,
         "paper": site.file.paper or "A4",

@@ -77,9 +77,9 @@ def _room(site: Site, name: str | None) -> Room | None:
 
 
 def _lines(names: tuple[str, ...], t: PaperTexts) -> list[dict[str, str]]:
-    """Questions by id, each with a line of its own."""
-    ask = {question.id: question.ask for _, question in every_question()}
-    return [{"name": name, "label": t(f"ask.{name}", ask[name])} for name in names]
+    """Questions by id, each with a line of its own under a short name."""
+    known = {question.id for _, question in every_question()}
+    return [{"name": name, "label": t(f"sheet.field.{name}")} for name in names if name in known]
 
 
 def _first(question: Question, t: PaperTexts) -> dict[str, Any]:

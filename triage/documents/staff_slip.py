@@ -14,15 +14,16 @@ def staff_slip(a: Assessment) -> Paper:
     """One page for the person who felt it.
 
     Args:
-        a: the assessment; only its number, the signs to watch for and the urgency are used.
+        a: the assessment; only its number, the urgency and whether it is settled are used.
     """
     t = PaperTexts(a.site)
     watch = [t(f"watch.{n}", each) for n, each in enumerate(table("care")["watch_for"], 1)]
+    standing = "settled" if a.incident.outcome.confirmed_cause else "open"
     sections = [
         ("care", _care(a, t)),
         ("watch", watch),
         ("again", t.several("staff_slip.again_lines")),
-        ("done", t.several("staff_slip.done_lines")),
+        ("done", [t("staff_slip.checked"), t(f"staff_slip.{standing}")]),
         ("call", contact_lines(t, a.site, ("occupational_health", "blood_exposure",
                                            "biomedical"))),
         ("case", [a.record.case]),

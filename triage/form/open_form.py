@@ -8,6 +8,7 @@ from triage.canonical import case_number, new_record_id
 from triage.clock import Moment
 from triage.errors import CannotWrite
 from triage.form import additions, draft
+from triage.form.answers import read
 from triage.form.change import confirmed
 from triage.form.entries import add
 from triage.form.lines import Lines, say
@@ -51,8 +52,10 @@ def open_form(path: Path | None, opening: Opening) -> bool:
     """
     fresh = opening.record_id()
     target = path or Path(f"{case_number(fresh)}.yaml")
-    if path is None and target.exists():
+    if target.is_dir() or (path is None and target.exists()):
         raise CannotWrite(f"{target}: is there already; name a file")
+    if opening.by:
+        read("recorded_by", opening.by, among=(), present=opening.clock(), zone="UTC")
     with draft.only_writer(target, opening.by or "role not said"):
         return _fill(target, fresh, opening)
 
@@ -95,6 +98,10 @@ def _gone_on_with(state: State, opening: Opening) -> State:
             found.tree[section.part] = [{"id": f"{PREFIX[section.part]}1"}]
             if section.part == "contacts":
                 found.tree["contacts"][0] |= {"person": "p1", "items": ["item1"]}
+    if "recorded_at" not in found.tree:
+        by = {"recorded_by": opening.by} if opening.by else {}
+        found.tree.update(by | {"recorded_at": opening.clock().text})
+        return add(found, "record begun with the form", opening.by, opening.clock())
     earlier = found.marks.get("by")
     if opening.by and earlier and opening.by != earlier:
         say(f"Taken over from: {earlier}.")

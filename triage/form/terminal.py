@@ -103,7 +103,7 @@ class Form:
             )
         except InvalidValue as error:
             if not self.lines.talks:
-                raise InvalidValue(f"'{typed[:60]}' to: {self._asked(step)} {error}") from None
+                raise InvalidValue(f"{self._asked(step)} {error}") from None
             say(f"{error}", "  ")
             return
         if change.doubt and self.doubted != f"{step.key} {typed}":

@@ -1,20 +1,26 @@
 """The reading of a log at the time of an event, with its doubt, the hour before and the trend."""
 
 from bisect import bisect_left, bisect_right
+from collections.abc import Iterator
 from math import sqrt
 from statistics import fmean, linear_regression
 
 from triage.clock import Moment
 from triage.frozen import frozen
 from triage.logs.log import Log
-from triage.logs.options import EVENTS
-from triage.logs.samples import HOUR, Sample, gaps, stuck
+from triage.logs.options import EVENTS, QUANTITY
+from triage.logs.samples import HOUR, Sample, gaps, resolution, stuck
 from triage.logs.stamps import shown
+from triage.quantity import worded
 from triage.visible import visible
 
 MOST_EXCERPT = 5500
 """Characters of the excerpt; the record's field keeps 6000."""
-_AIR = ("humidity", "temperature")
+_WORSE = 1.2
+"""Times worse than the reading from which another row within the hour is named; judgement: more
+than a monitor's own scatter."""
+_USUAL = {"humidity": (5.0, 90.0), "temperature": (10.0, 35.0)}
+"""Room air that raises no question; judgement, the same as for the fields of the record."""
 
 
 @frozen
@@ -87,8 +93,8 @@ def reading_at(log: Log, moment: Moment, zone: str, *, sensor_doubt: float = 0.0
         InvalidValue: a time of the event that a clock change doubles or skips.
 
     Source:
-        JCGM 100:2008, 4.3.7 and 5.1.2: a value known to lie between two limits has the variance
-        (difference)^2 / 12; independent variances add.
+        JCGM 100:2008, 4.3.7: a value known to lie between two limits has the variance
+        (difference)^2 / 12; F.2.2.1: a resolution has that of its step; 5.1.2: variances add.
     """
     begin, end = (each.timestamp() for each in moment.interval(zone))
     near = _near(log.samples, begin, end)
@@ -98,10 +104,10 @@ def reading_at(log: Log, moment: Moment, zone: str, *, sensor_doubt: float = 0.0
     high = max((each.high for each in near), default=None)
     doubt = None
     if value is not None and low is not None and high is not None:
-        doubt = sqrt((high - low) ** 2 / 12 + sensor_doubt**2)
+        doubt = sqrt(((high - low) ** 2 + resolution(log.samples) ** 2) / 12 + sensor_doubt**2)
     return LogReading(
         log, moment, (begin, end), value, bound, low, high, doubt, sensor_doubt, reason,
-        _trend(log.samples, begin), _odd(log, begin, end), _excerpt(log, begin, end),
+        _trend(log.samples, begin), _odd(log, begin, end, value), _excerpt(log, begin, end),
     )  # fmt: skip
 
 
@@ -158,20 +164,38 @@ def _trend(samples: tuple[Sample, ...], begin: float) -> Trend | None:
     return Trend(min(values), max(values), fmean(values), slope, len(hour))
 
 
-def _odd(log: Log, begin: float, end: float) -> tuple[str, ...]:
+def _odd(log: Log, begin: float, end: float, value: float | None) -> tuple[str, ...]:
     """What touches the hour before the event or the event itself."""
     found = []
     zone = log.options.zone or "UTC"
-    for first, last, rows in stuck(log.samples) if log.options.kind in _AIR else ():
+    for first, last, rows in stuck(log.samples) if log.options.kind in _USUAL else ():
         if first.at <= end and last.at >= begin - HOUR:
             found.append(f"the same value in {rows} rows from {shown(first.at, zone)}: a stuck "
                          "sensor, or one that shows whole steps")  # fmt: skip
+    usual = _USUAL.get(log.options.kind)
+    near = _near(log.samples, begin, end)
+    if usual and any(not usual[0] <= each.value <= usual[1] for each in near):
+        found.append("a value next to the event is unusual for a room: a failed sensor?")
+    found += _worse(log, begin, end, value)
     times = [each.at for each in log.samples]
     holes = [(a, b) for a, b in gaps(times) if a < end and b > begin - HOUR]
     if holes:
         found.append(f"a gap of {max(b - a for a, b in holes) / 60:.0f} min in the hour before "
                      "or at the event")  # fmt: skip
     return tuple(found)
+
+
+def _worse(log: Log, begin: float, end: float, value: float | None) -> Iterator[str]:
+    """A monitor that shows worse within the hour: a clock that is wrong would hide it."""
+    if value is None or not log.options.kind.startswith("monitor"):
+        return
+    near = [each for each in log.samples if begin - HOUR <= each.at <= end + HOUR]
+    sign = 1 if log.options.kind == "monitor-current" else -1
+    worst = max(near, key=lambda each: sign * each.value)
+    if sign * worst.value > sign * value * _WORSE**sign:
+        at = shown(worst.at, log.options.zone or "UTC")
+        quantity = worded(worst.value, QUANTITY[log.options.kind], 3)
+        yield f"it shows {quantity} at {at}, within an hour: is the log's clock right?"
 
 
 def _excerpt(log: Log, begin: float, end: float) -> str:
@@ -186,7 +210,8 @@ def _excerpt(log: Log, begin: float, end: float) -> str:
         head.append(f"log's clock {log.options.ahead:+.0f} s against wall time, as said")
     if log.sheet.header:
         head.append(f"{log.sheet.header_line}: {_flat(log, log.sheet.header)}")
-    rows = [f"{line}: {_flat(log, cells[line])}" for _, line in used]
+    rows = [(abs(at - begin), n, f"{line}: {_flat(log, cells[line])}")
+            for n, (at, line) in enumerate(used)]  # fmt: skip
     return "\n".join([*head, *_shortened(rows, MOST_EXCERPT - sum(map(len, head)))])
 
 
@@ -194,13 +219,14 @@ def _flat(log: Log, cells: tuple[str, ...] | list[str]) -> str:
     return visible(" ".join(log.sheet.line(cells).split("\n"))).strip()
 
 
-def _shortened(rows: list[str], most: int) -> list[str]:
-    """The last rows that fit; what is left out is said."""
-    kept: list[str] = []
-    for row in reversed(rows):
+def _shortened(rows: list[tuple[float, int, str]], most: int) -> list[str]:
+    """The rows nearest to the event that fit, in order; what is left out is said."""
+    kept: list[tuple[int, str]] = []
+    for _, number, row in sorted(rows):
         most -= len(row) + 1
-        if most < 40:
+        if most < 0:
             break
-        kept.insert(0, row)
+        kept.append((number, row))
     left = len(rows) - len(kept)
-    return [f"({left} earlier rows left out)", *kept] if left else kept
+    found = [row for _, row in sorted(kept)]
+    return [f"({left} rows further from the event left out)", *found] if left else found

@@ -44,6 +44,16 @@ def gaps(times: Sequence[float]) -> list[tuple[float, float]]:
     return [(a, b) for a, b in pairwise(times) if step and b - a > _GAP * step]
 
 
+def resolution(samples: Sequence[Sample]) -> float:
+    """Smallest step between two values of a log, unit of the value; 0 where all are the same.
+
+    With few rows it is larger than the step of the instrument, never smaller.
+    """
+    values = sorted({each.value for each in samples if each.low == each.high})
+    noise = 1e-9 * max(map(abs, values), default=0)
+    return min((b - a for a, b in pairwise(values) if b - a > noise), default=0.0)
+
+
 def stuck(samples: Sequence[Sample]) -> Iterator[tuple[Sample, Sample, int]]:
     """First, last and number of samples of every long run of one value."""
     for _, run in groupby(samples, lambda each: (each.low, each.high)):

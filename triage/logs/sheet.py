@@ -22,6 +22,7 @@ MOST_BYTES = 200_000_000
 MOST_ROWS = 1_000_000
 _SAMPLE = 300  # lines looked at to find delimiter and header
 _UTF16_MARKS = (b"\xff\xfe", b"\xfe\xff")
+_LOOKED_AT = 100_000  # bytes; a file without text shows it early
 _LONGEST = 400  # characters of a line that are kept for the excerpt
 Row = tuple[int, list[str]]
 
@@ -94,6 +95,8 @@ def from_bytes(data: bytes, name: str, options: Options) -> Sheet:
 
 
 def _decoded(data: bytes, name: str, options: Options) -> tuple[str, str]:
+    if b"\0" in data[:_LOOKED_AT] and data[:2] not in _UTF16_MARKS:
+        raise BadRecord([f"{name}: byte {data.index(0)} is zero; not a text log"])
     encoding = options.encoding or ("utf-16" if data[:2] in _UTF16_MARKS else "utf-8")
     try:
         text = data.decode("utf-8-sig" if encoding == "utf-8" else encoding)

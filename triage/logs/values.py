@@ -2,6 +2,7 @@
 
 import re
 from collections.abc import Iterable
+from functools import lru_cache
 
 from triage.errors import BadRecord, CannotTell, InvalidValue
 from triage.frozen import frozen
@@ -197,6 +198,7 @@ def _decimal(split: Split, scales: Scales, name: str, options: Options) -> tuple
     raise CannotTell(f"{name}: point and comma are used in more than one way; say --decimal")
 
 
+@lru_cache(maxsize=65536)
 def number(text: str, decimal: str) -> float | None:
     """A number with a known decimal sign; the other sign only between groups of three.
 
