@@ -59,6 +59,8 @@ def _told_states(
     yield "liquid_in_item", _seen_on(touched, "wet"), "seen"
     yield "live_part_exposed", _live_part(touched), "seen"
     yield "visible_damage", _damage(incident, touched), "seen"
+    yield "hot_or_smoking", _hot(incident, touched), "seen"
+    yield "lost_consciousness", _unconscious(incident), "seen"
     yield "second_contact", _second_contact(incident.contacts), "said"
     if place.area not in (None, "operating_room"):
         yield "glove", _glove(incident.contacts), "said"
@@ -181,6 +183,17 @@ def _damage(incident: Incident, touched: tuple[Item, ...]) -> str | None:
     if _live_part(touched) == "yes":
         return None
     return "yes" if any("damaged" in item.condition for item in touched + linked) else None
+
+
+def _hot(incident: Incident, touched: tuple[Item, ...]) -> str | None:
+    """Heat or smoke on anything involved; nobody notes that there was none."""
+    _, linked = involved(incident)
+    return "yes" if any("hot" in item.condition for item in touched + linked) else None
+
+
+def _unconscious(incident: Incident) -> str | None:
+    signs = (sign for person in incident.persons for sign in person.signs)
+    return "yes" if "lost_consciousness" in signs else None
 
 
 def _second_contact(contacts: tuple[Contact, ...]) -> str | None:
