@@ -27,7 +27,7 @@ from triage.form.draft import save
 state = fresh()
 print("ready", flush=True)
 for number in range(100000):
-    state.tree["place"] = {"position": f"{number} " * 90}
+    state.tree["place"] = {"position": (f"{number} " * 90)[:199]}
     save(Path(sys.argv[1]), state, complete=number % 2 == 0)
 """
 

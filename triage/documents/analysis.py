@@ -117,7 +117,8 @@ def _weights(a: Assessment) -> list[Block]:
     return [
         {"kind": "chart", "svg": chart,
          "caption": f"Weights in decibans (10 log of the odds) for {first.lower()} against "
-                    f"{second.lower()}; together {total:+.1f}."},
+                    f"{second.lower()}: each bar points to the cause it speaks for; together "
+                    f"{abs(total):.1f} for {(first if total >= 0 else second).lower()}."},
     ]  # fmt: skip
 
 
@@ -220,7 +221,7 @@ def _flags(a: Assessment) -> Iterator[str]:
         state = "cleared" if each.cleared else "stands"
         where = ", ".join(item_name(a.incident, i) for i in each.items) or "the place"
         clearing = each.missing[0].upper() + each.missing[1:]
-        yield f"{each.flag.name}, {state}: {each.because}; {where}. {clearing}."
+        yield f"{each.flag.name}, {state}: {each.because}; {where}. {clearing.rstrip('.')}."
 
 
 def _why(a: Assessment) -> list[Block]:

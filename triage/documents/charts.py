@@ -159,7 +159,8 @@ def weights(rows: Sequence[tuple[str, float]], *, sides: tuple[str, str], alt: s
         alt: text read instead of the picture.
 
     Returns:
-        SVG text; bars to the right are solid, to the left hatched; each bears its weight.
+        SVG text; bars to the right are solid, to the left hatched; each bears its weight,
+        without a sign: the side says for whom.
     """
     reach = max([10.0, *(abs(weight) for _, weight in rows)])
     axis = Axis(LABELS + 24, WIDTH - 34, (-reach, reach), float)
@@ -174,7 +175,7 @@ def weights(rows: Sequence[tuple[str, float]], *, sides: tuple[str, str], alt: s
         bar = box(middle, y, x, y + 8) if weight >= 0 else hatch(x, y, middle, y + 8)
         beside = (x + 3, "start") if weight >= 0 else (x - 3, "end")
         parts += [bar, text(0, y + 6.5, fit(label, LABELS - 10))]
-        parts.append(text(beside[0], y + 6.5, _signed(weight), anchor=beside[1]))
+        parts.append(text(beside[0], y + 6.5, f"{abs(weight):.0f}", anchor=beside[1]))
     return figure(bottom + 3, alt, parts)
 
 
@@ -346,7 +347,3 @@ def _steps(values: Sequence[float]) -> list[float]:
 
 def _percent(probability: float) -> str:
     return f"{100 * probability:.0f} %"
-
-
-def _signed(weight: float) -> str:
-    return f"{weight:+.0f}".replace("-", "−")

@@ -41,6 +41,7 @@ SIZES = (
     Size(2, 1, 180, 4, 3, 3, 4, 2),
     Size(2, 1, 120, 3, 3, 3, 4, 1),
     Size(1, 1, 120, 3, 2, 3, 3, 1),
+    Size(1, 1, 120, 3, 1, 3, 3, 1),
     Size(1, 1, 90, 2, 1, 2, 2, 1),
 )
 """Fullest first (judgement: what fills a page without crowding it)."""
@@ -156,7 +157,8 @@ def _cautions(a: Assessment, most: int) -> list[str]:
 def height(page: dict[str, Any], lines: list[str]) -> float:
     """Points that a page one takes, title block included, a little more rather than less."""
     title = 19.2 + 1.7 + 8.5 + _text(" · ".join(lines), _WIDTH + 88, 9.0)
-    return title + sum(5.9 + part for part in _sections(page))
+    # Measured on the examples, the sum is 4 to 12 % too high; half of the least is given back.
+    return 0.98 * (title + sum(5.9 + part for part in _sections(page)))
 
 
 def _sections(page: dict[str, Any]) -> Iterator[float]:
