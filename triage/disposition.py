@@ -22,6 +22,9 @@ from triage.site import Site
 from triage.told import Observed
 from triage.validity import CheckVerdict, covers, through_cord
 
+NOT_VALID = " is not done and valid"
+"""How the gate names a check that is still open."""
+
 
 class Level(IntEnum):
     """Dispositions from mildest to most severe."""
@@ -193,7 +196,7 @@ def _item_shuts(item: Item, given: Inputs) -> Iterator[str]:
                 "residual risk accepted by a named role until a date, with a watch plan"
             )
         else:
-            yield f"{item.id}: {check_kinds()[check].name} is not done and valid"
+            yield f"{item.id}: {check_kinds()[check].name}{NOT_VALID}"
 
 
 def _answers_shut(given: Inputs) -> Iterator[str]:

@@ -1,6 +1,6 @@
 """The analysis part of the report: ranking, physics, what it hangs on, checks still open."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import replace
 from functools import lru_cache
 from typing import Any
@@ -8,6 +8,7 @@ from typing import Any
 from triage import words as w
 from triage.assessment import Assessment
 from triage.conditions import Conditions
+from triage.disposition import NOT_VALID
 from triage.documents.charts import (
     CauseRange,
     HumidityCurve,
@@ -32,6 +33,7 @@ from triage.documents.wording import (
     meaning,
     percent,
     percent_range,
+    spoken,
 )
 from triage.electrical_exposure import ELECTRICAL_CAUSES
 from triage.errors import InvalidValue
@@ -85,11 +87,11 @@ def _ranking(a: Assessment) -> list[Block]:
         for c in shown
         if (r := a.sensitivity.ranges[c])
     ]
-    spoken = "; ".join(
+    said = "; ".join(
         f"{row.label} about {percent(row.middle)}, range {percent(row.low)} to {percent(row.high)}"
         for row in rows
     )
-    chart = cause_ranges(rows, alt=f"Ranked causes with their ranges: {spoken}.")
+    chart = cause_ranges(rows, alt=f"Ranked causes with their ranges: {said}.")
     table = {
         "kind": "table",
         "columns": [{"name": n, "width": x} for n, x in
@@ -99,21 +101,22 @@ def _ranking(a: Assessment) -> list[Block]:
     }  # fmt: skip
     caption = "Causes of the sensation, with the range that the judged numbers leave (9 in 10)."
     firm = {"stable": "stable", "leaning": "leaning only", "open": "open"}[a.sensitivity.firmness]
+    hangs_on = "; ".join(spoken(each) for each in a.sensitivity.hangs_on)
     return [
         {"kind": "chart", "svg": chart, "caption": caption}, table,
-        _note(f"First rank: {firm}. It hangs most on: {'; '.join(a.sensitivity.hangs_on)}."),
+        _note(f"First rank: {firm}. It hangs most on: {hangs_on}."),
     ]  # fmt: skip
 
 
 def _weights(a: Assessment) -> list[Block]:
     k = knowledge()
     first, second = (k.causes[c].name for c in a.posterior.pair)
-    lines = [(x.label, -x.decibans) for x in a.posterior.weights if abs(x.decibans) >= 0.05]
+    lines = [(spoken(x.label), -x.decibans) for x in a.posterior.weights if abs(x.decibans) >= 0.05]
     total = sum(x.decibans for x in a.posterior.weights)
     if not lines:
         return []
-    spoken = "; ".join(f"{x.label} {x.decibans:+.1f}" for x in a.posterior.weights)
-    chart = weights(lines, sides=(first, second), alt=f"Weights in decibans for {first}: {spoken}.")
+    said = "; ".join(f"{spoken(x.label)} {x.decibans:+.1f}" for x in a.posterior.weights)
+    chart = weights(lines, sides=(first, second), alt=f"Weights in decibans for {first}: {said}.")
     return [
         {"kind": "chart", "svg": chart,
          "caption": f"Weights in decibans (10 log of the odds) for {first.lower()} against "
@@ -238,11 +241,24 @@ def _why(a: Assessment) -> list[Block]:
             f"{upper} probable at the upper limit."
         ))  # fmt: skip
     else:
-        shut = "; ".join(a.gate.shut_by)
-        blocks.append(
-            _note(f"Static is not the disposition, and this would have to change: {shut}.")
-        )
+        blocks.append(_note("Static is not the disposition, and this would have to change:"))
+        blocks.append(_list(list(_shut(a.gate.shut_by))))
     return blocks
+
+
+def _shut(reasons: Sequence[str]) -> Iterator[str]:
+    """What keeps the gate shut; the open checks of one item share a line."""
+    open_checks: dict[str, list[str]] = {}
+    rest = []
+    for reason in reasons:
+        item, colon, check = reason.partition(": ")
+        if colon and check.endswith(NOT_VALID):
+            open_checks.setdefault(item, []).append(check.removesuffix(NOT_VALID).lower())
+        else:
+            rest.append(reason[0].upper() + reason[1:] + ".")
+    for item, checks in open_checks.items():
+        yield f"{item}, not done and valid: {'; '.join(checks)}."
+    yield from rest
 
 
 def _actions(a: Assessment) -> Iterator[str]:
