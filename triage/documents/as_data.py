@@ -60,19 +60,7 @@ def as_data(a: Assessment, s: Summary, earlier: History | None = None) -> dict[s
             for each in a.look_back
         ],
         "earlier": _earlier(earlier),
-        "red_flags": [
-            {"flag": f.flag.id, "because": f.because, "items": list(f.items),
-             "cleared": f.cleared, "clearing": f.missing}
-            for f in a.flags
-        ],
-        "gate": {"open": a.gate.open, "shut_by": list(a.gate.shut_by), "upper": a.gate.upper,
-                 "threshold": a.gate.threshold},
-        "checks": [
-            {"check": v.check.id, "kind": v.check.kind, "of": v.check.of, "state": v.state,
-             "as_left": v.as_left, "reasons": list(v.reasons),
-             "limit": v.limit.id if v.limit else None}
-            for v in a.verdicts
-        ],
+        **_judged(a),
         "next_checks": [
             {"check": n.kind.id, "item": n.item, "mandatory": n.mandatory, "bits": n.bits,
              "performer": n.kind.performer, "after": list(n.after)}
@@ -94,6 +82,25 @@ def as_json(data: Any) -> str:
     if text.replace("\n", "").isprintable():
         return text
     return "".join(c if c.isprintable() or c == "\n" else json.dumps(c)[1:-1] for c in text)
+
+
+def _judged(a: Assessment) -> dict[str, Any]:
+    """Red flags, gate and checks."""
+    return {
+        "red_flags": [
+            {"flag": f.flag.id, "because": f.because, "items": list(f.items),
+             "cleared": f.cleared, "clearing": f.missing}
+            for f in a.flags
+        ],
+        "gate": {"open": a.gate.open, "shut_by": list(a.gate.shut_by), "upper": a.gate.upper,
+                 "threshold": a.gate.threshold},
+        "checks": [
+            {"check": v.check.id, "kind": v.check.kind, "of": v.check.of, "state": v.state,
+             "as_left": v.as_left, "reasons": list(v.reasons),
+             "limit": v.limit.id if v.limit else None}
+            for v in a.verdicts
+        ],
+    }  # fmt: skip
 
 
 def _earlier(found: History | None) -> dict[str, Any] | None:

@@ -4,6 +4,7 @@ from collections.abc import Iterator
 from typing import Any
 
 from triage.assessment import Assessment
+from triage.documents.held_fast import held_lines
 from triage.documents.wording import NBSP, amount, amount_range, item_name, percent
 from triage.documents.wording import percent_range as percents
 from triage.electrical_contacts import (
@@ -65,6 +66,7 @@ def electrical_lines(a: Assessment) -> Iterator[str]:
 
 def _closing_lines(a: Assessment, found: tuple[ContactExposure, ...]) -> Iterator[str]:
     yield from ceiling_lines(a)
+    yield from held_lines(a, found)
     yield from _measured_lines(a, found)
     yield from dict.fromkeys(_spark_lines(found))
     yield from _volt_lines(a)

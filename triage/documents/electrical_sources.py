@@ -5,6 +5,7 @@ from collections.abc import Iterator
 from triage.assessment import Assessment
 from triage.citation import Citation
 from triage.documents.electrical import not_excluded
+from triage.documents.held_fast import held_sources
 from triage.electrical_contacts import ContactExposure, contact_exposures
 from triage.electrical_tables import monitor_tables
 from triage.physics.body_impedance import impedance_citation
@@ -23,6 +24,7 @@ def electrical_sources(a: Assessment) -> Iterator[tuple[str, Citation]]:
     """Every electrical number of the analysis with its citation; some stand more than once."""
     found = contact_exposures(a.incident, a.site, a.exposure.conditions, a.verdicts)
     yield from _of_the_body(found)
+    yield from held_sources()
     wanted = {name for each in found for name in _assumed(each)}
     if not a.exposure.conditions.voltage_known:
         wanted |= {"nominal_voltage", "nominal_frequency"}
