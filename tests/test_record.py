@@ -188,7 +188,7 @@ def answers(part: Any) -> Any:
     return {name: answers(getattr(part, name)) for name, _ in fields.table(type(part))}
 
 
-def loaded_or_refused(record: Any) -> None:
+def assert_read_or_refused(record: Any) -> None:
     try:
         found = from_plain(Plain("r", record))
     except TriageError:
@@ -201,7 +201,7 @@ def loaded_or_refused(record: Any) -> None:
 @settings(suppress_health_check=[HealthCheck.too_slow], deadline=None)
 @given(TREES)
 def test_any_tree_is_a_record_that_reads_back_or_a_deliberate_error(record: Any) -> None:
-    loaded_or_refused(record)
+    assert_read_or_refused(record)
 
 
 @settings(max_examples=300, deadline=None)
@@ -209,7 +209,7 @@ def test_any_tree_is_a_record_that_reads_back_or_a_deliberate_error(record: Any)
 def test_a_record_with_anything_in_any_place_reads_back_or_is_refused(
     path: str, value: Any
 ) -> None:
-    loaded_or_refused(spoiled({path: value}))
+    assert_read_or_refused(spoiled({path: value}))
 
 
 @settings(deadline=None)

@@ -97,8 +97,8 @@ def _unknown(a: Assessment, name: str, known: tuple[str, ...]) -> str:
     if each is not None and each.felt is None:
         return f"'{cause}' has no estimate: {each.unknown or 'there is no model of it'}"
     near = get_close_matches(name, known, n=1)
-    hint = f"; did you mean '{near[0]}'?" if near else ""
-    return f"no estimate '{name}'{hint} Known: {', '.join(known)}"
+    hint = f"; did you mean '{near[0]}'" if near else ""
+    return f"no estimate '{name}'{hint}; known: {', '.join(known)}"
 
 
 def _static(cause: str, spark: StaticExposure) -> Mapping[str, Callable[[], Quantity]]:

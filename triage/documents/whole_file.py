@@ -27,9 +27,8 @@ def write_whole(target: Path, content: bytes) -> None:
                 os.fsync(file.fileno())
             os.chmod(name, 0o666 & ~_umask())
             os.replace(name, target)
-        except BaseException:
-            Path(name).unlink(missing_ok=True)
-            raise
+        finally:
+            Path(name).unlink(missing_ok=True)  # gone already where it took its place
     except OSError as error:
         reason = error.strerror or "cannot be written"
         raise CannotWrite(f"{target}: {reason}; name another place with -o") from None
